@@ -1,0 +1,1 @@
+"""Installed as redoxq.data: files read by the program, no code."""

@@ -1,0 +1,1 @@
+"""Installed as redoxq.grammar: files read by the program, no code."""

@@ -1,0 +1,1 @@
+"""Substances: elements, formulas, species, names and recipes."""

@@ -1,0 +1,1 @@
+"""Practice: what thermodynamics cannot know, as rules over computed facts."""

@@ -1,0 +1,1 @@
+"""Sentences: read, resolved against the tables, turned into questions."""

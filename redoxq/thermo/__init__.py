@@ -1,0 +1,1 @@
+"""Physics of solutions: water, Gibbs energies, activities, equilibrium."""
