@@ -19,9 +19,11 @@ from redoxq.rules.rule import Effect, Rule
 
 __all__ = ["Block", "Effect", "Rule", "parse_rules", "read_block", "read_blocks", "split_rules"]
 
-TOKEN_WORDS: Final = {"WORD": "a word", "NUMBER": "a number", "STRING": "a text in quotes", "LPAR": "(",
-                      "RPAR": ")", "COMMA": ",", "_OVER": ">", "_UNDER": "<", "_NOT_UNDER": ">=", "_NOT_OVER": "<=",
-                      "$END": "the end of the rule"}
+TOKEN_WORDS: Final = {
+    "WORD": "a word", "NUMBER": "a number", "STRING": "a text in quotes", "$END": "the end of the rule",
+    "LPAR": "(", "RPAR": ")", "COMMA": ",",
+    "COMPARE": "above, below, at least, at most",
+}
 
 
 @dataclass(frozen=True, slots=True)

@@ -55,7 +55,7 @@ _OPENING = re.compile(r"when\s+metal\s+is\s+(?:one\s+of\s+\(([^()]*)\)|(\w+))\s+
 
 def _metals(block: Block, asked: str) -> set[str]:
     """Metals that a rule is for; the one asked about where the opening words do not tell."""
-    opening = _OPENING.search(block.text)
+    opening = _OPENING.search(re.sub(r"#[^\n]*", "", block.text))
     if opening is None or re.search(r"\bor\b", _without_brackets(opening[3])):
         return {asked}
     return set(re.findall(r"\w+", opening[1] or opening[2]))

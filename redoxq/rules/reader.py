@@ -70,17 +70,11 @@ class Reader(Transformer[Token, Any]):
     def is_not_value(self, phrase: list[Token], *values: list[Token]) -> Condition:
         return self.is_value(phrase, *values).negated()
 
-    def above(self, phrase: list[Token], quantity: list[Token]) -> Condition:
-        return _range(phrase, low=quantity, low_open=True)
-
-    def below(self, phrase: list[Token], quantity: list[Token]) -> Condition:
-        return _range(phrase, high=quantity, high_open=True)
-
-    def at_least(self, phrase: list[Token], quantity: list[Token]) -> Condition:
-        return _range(phrase, low=quantity)
-
-    def at_most(self, phrase: list[Token], quantity: list[Token]) -> Condition:
-        return _range(phrase, high=quantity)
+    def compared(self, phrase: list[Token], comparison: Token, quantity: list[Token]) -> Condition:
+        words = "".join(comparison.split())
+        if words in ("above", "atleast", ">", ">="):
+            return _range(phrase, low=quantity, low_open=words in ("above", ">"))
+        return _range(phrase, high=quantity, high_open=words in ("below", "<"))
 
     def between(self, phrase: list[Token], low: list[Token], high: list[Token]) -> Condition:
         return _range(phrase, low=low, high=high)
@@ -150,13 +144,15 @@ def _effect(phrase: list[Token], text: str) -> Effect:
     if _join(phrase) in SETTLING or (kind == "pace" and subject in PACES):
         if text:
             raise Mistake(f'"{_join(phrase)}" takes no text', phrase)
-    elif kind in ("caution", "hazard") and subject:
+    elif (kind == "caution" and len(phrase) > 1) or (kind == "hazard" and len(phrase) > 2):
         if not text:
             raise Mistake(f"a {kind} needs a text in quotes", phrase)
     elif kind != "happening" or subject not in HAPPENINGS:
         known = ", ".join((*SETTLING, f"pace {'|'.join(PACES)}", f"happening {'|'.join(HAPPENINGS)}",
-                           'caution TOPIC "text"', 'hazard GAS "text"'))
+                           'caution TOPIC "text"', 'hazard GAS TOPIC "text"'))
         raise Mistake(f'I know no effect "{_join(phrase)}". Effects are: {known}.', phrase)
+    if kind == "hazard":
+        return Effect(kind, str(phrase[1]), text, _join(phrase[2:]))
     return Effect(kind, subject, text)
 
 

@@ -25,11 +25,14 @@ class Effect:
         idle or acts; holds or breaks; the happening; the pace; the topic; the gas.
     text : str
         What a caution or hazard says; the species of a happening, where the metal itself is not meant.
+    topic : str
+        Of a hazard: fire, poison, explosion, pressure.
     """
 
     kind: str
     subject: str
     text: str = ""
+    topic: str = ""
 
     @property
     def settles(self) -> bool:
