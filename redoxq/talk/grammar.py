@@ -1,0 +1,85 @@
+"""The grammar of sentences as a parser, and what it would hear next, in words."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Collection, Iterable
+from functools import cache
+from importlib.resources import files
+
+from lark import Lark
+from lark.exceptions import UnexpectedInput, UnexpectedToken
+from lark.lexer import PatternStr
+
+from redoxq.talk.reader import Reader
+
+END = "$END"
+
+WORDS = {
+    END: "the end of the sentence",
+    "WORD": "a name",
+    "OF": '"of"',
+    "NUMBER": "a number",
+    "FRACTION": "a number",
+    "STRENGTH_UNIT": "a unit of strength (M, mol/kg, g/L, wt%, ppm)",
+    "VOLUME_UNIT": "a unit of volume (L, mL, m3)",
+    "MASS_UNIT": "a unit of mass (g, kg, mg)",
+    "TEMPERATURE_UNIT": "a unit of temperature (C, K, F)",
+    "GAS": "a gas (air, oxygen, nitrogen, hydrogen, argon)",
+    "AERATION": '"deaerated"',
+    "_PH": "pH",
+    "_ARROW": '"="',
+    "COMMA": "a comma",
+}
+"""How the terminals that are not a fixed word are named to a person; the others stand for themselves."""
+
+_ORDER = (
+    "IN", "EQUAL", "WORD", "NUMBER", "STRENGTH_UNIT", "TEMPERATURE_UNIT", "MASS_UNIT", "VOLUME_UNIT", "GAS",
+)
+
+
+@cache
+def sentence_grammar() -> Lark:
+    """Return the parser of grammar/sentence.lark, built when first asked for."""
+    text = files("redoxq.grammar").joinpath("sentence.lark").read_text(encoding="utf-8")
+    return Lark(text, parser="lalr", lexer="contextual", transformer=Reader(), maybe_placeholders=False)
+
+
+@cache
+def _fixed_words() -> dict[str, str]:
+    return {terminal.name: terminal.pattern.value for terminal in sentence_grammar().terminals
+            if isinstance(terminal.pattern, PatternStr)}
+
+
+def fixed_word(terminal: str) -> str | None:
+    """Return the text of a terminal that is one fixed word, such as `under`; None for the others."""
+    return _fixed_words().get(terminal)
+
+
+def in_words(terminals: Collection[str]) -> list[str]:
+    """Name what the parser would accept, most telling first, without repeats."""
+    ranked = sorted(terminals, key=lambda name: (_ORDER.index(name) if name in _ORDER else len(_ORDER), name))
+    return list(dict.fromkeys(WORDS.get(name) or f'"{_fixed_words()[name]}"' for name in ranked))
+
+
+def accepted_at(error: UnexpectedInput, text: str) -> frozenset[str]:
+    """Return the terminals that the parser would have accepted where it stopped in a text."""
+    if isinstance(error, UnexpectedToken):
+        return frozenset(error.accepts or ())
+    return accepted_next(text[:error.pos_in_stream])
+
+
+def accepted_next(text: str) -> frozenset[str]:
+    """Return the terminals that may follow the beginning of a sentence; none when it is already wrong."""
+    parser = sentence_grammar().parse_interactive(text)
+    try:
+        parser.exhaust_lexer()
+    except UnexpectedInput:
+        return frozenset()
+    accepts: Callable[[], set[str]] = parser.accepts
+    return frozenset(accepts())
+
+
+def listed(words: Iterable[str]) -> str:
+    """Join words as a list in a sentence: `a, b or c`."""
+    *most, last = words
+    return f"{', '.join(most)} or {last}" if most else last
