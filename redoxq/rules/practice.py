@@ -20,7 +20,7 @@ def practice(metal: str | None = None, site: tuple[Path, ...] = ()) -> tuple[Rul
     metal : str, optional
         Symbol; rules that open with `when metal is` another are not even read. All rules when left out.
     site : tuple of Path
-        Files of site rules.
+        Files of site rules; these are read whole, so that a mistake shows at once.
 
     Returns
     -------
@@ -31,8 +31,8 @@ def practice(metal: str | None = None, site: tuple[Path, ...] = ()) -> tuple[Rul
     RuleError
         For a rule that cannot be read, or an id that stands twice.
     """
-    blocks = (*_own_blocks(), *(block for path in site for block in _site_blocks(path)))
-    return read_blocks(block for block in blocks if metal is None or metal in _metals(block, metal))
+    own = (block for block in _own_blocks() if metal is None or metal in _metals(block, metal))
+    return read_blocks((*own, *(block for path in site for block in _site_blocks(path))))
 
 
 @cache
@@ -45,7 +45,7 @@ def _own_blocks() -> tuple[Block, ...]:
 
 def _site_blocks(path: Path) -> tuple[Block, ...]:
     try:
-        return split_rules(path.read_text(encoding="utf-8"), str(path))
+        return split_rules(path.read_text(encoding="utf-8-sig"), str(path))
     except (OSError, UnicodeDecodeError) as error:
         raise RuleError(f"cannot read the rules of {path}: {error}") from error
 
