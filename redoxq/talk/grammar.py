@@ -14,17 +14,27 @@ from redoxq.talk.reader import Reader
 
 END = "$END"
 
-WORDS = {
+EXAMPLES = {
+    "STRENGTH_UNIT": ("M", "mol/kg", "g/L", "mg/L", "wt%", "ppm"),
+    "VOLUME_UNIT": ("L", "mL", "m3"),
+    "MASS_UNIT": ("g", "kg", "mg"),
+    "TEMPERATURE_UNIT": ("C", "K", "F"),
+    "GAS": ("air", "oxygen", "nitrogen", "hydrogen", "argon"),
+    "AERATION": ("deaerated", "aerated"),
+    "_PH": ("pH",),
+}
+"""What may be typed for terminals that stand for a few words."""
+
+_KINDS = {
     END: "the end of the sentence",
     "WORD": "a name",
-    "OF": '"of"',
     "NUMBER": "a number",
     "FRACTION": "a number",
-    "STRENGTH_UNIT": "a unit of strength (M, mol/kg, g/L, wt%, ppm)",
-    "VOLUME_UNIT": "a unit of volume (L, mL, m3)",
-    "MASS_UNIT": "a unit of mass (g, kg, mg)",
-    "TEMPERATURE_UNIT": "a unit of temperature (C, K, F)",
-    "GAS": "a gas (air, oxygen, nitrogen, hydrogen, argon)",
+    "STRENGTH_UNIT": "a unit of strength",
+    "VOLUME_UNIT": "a unit of volume",
+    "MASS_UNIT": "a unit of mass",
+    "TEMPERATURE_UNIT": "a unit of temperature",
+    "GAS": "a gas",
     "AERATION": '"deaerated"',
     "_PH": "pH",
     "_ARROW": '"="',
@@ -58,7 +68,13 @@ def fixed_word(terminal: str) -> str | None:
 def in_words(terminals: Collection[str]) -> list[str]:
     """Name what the parser would accept, most telling first, without repeats."""
     ranked = sorted(terminals, key=lambda name: (_ORDER.index(name) if name in _ORDER else len(_ORDER), name))
-    return list(dict.fromkeys(WORDS.get(name) or f'"{_fixed_words()[name]}"' for name in ranked))
+    return list(dict.fromkeys(_in_words(name) for name in ranked))
+
+
+def _in_words(terminal: str) -> str:
+    kind = _KINDS.get(terminal) or f'"{_fixed_words()[terminal]}"'
+    examples = EXAMPLES.get(terminal, ())
+    return f"{kind} ({', '.join(examples)})" if kind.startswith("a ") and examples else kind
 
 
 def accepted_at(error: UnexpectedInput, text: str) -> frozenset[str]:

@@ -30,6 +30,8 @@ _NOT_YET = (
     (re.compile(r"\bjoined to\b"), "Joints of two metals"),
     (re.compile(r"\bexpect\b"), "Expectations"),
     (re.compile(r"^-?[\d.,]+ ?m?V\b"), "Conversions of potentials"),
+    (re.compile(r"^([1-9]\d{2}[A-Z]{0,3}|1\.\d{4}|[A-Z]\d{5}) in\b"), "Alloys"),
+    (re.compile(r"^(?!about |let )[^=]*\b(brass|bronze|steel|cast iron|solder)\b[^=]* in "), "Alloys"),
 )
 """Kinds of sentences that are known but not answered, by what they cannot do without."""
 
