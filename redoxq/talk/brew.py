@@ -10,7 +10,8 @@ from redoxq.errors import Place, RecipeError, RedoxqError, SentenceError
 from redoxq.jobs.questions import Definition
 from redoxq.matter.names import Substance
 from redoxq.matter.recipes import Air, Ingredient, Recipe
-from redoxq.talk.names_heard import acidic_or_charged, formula_heard, substance_heard
+from redoxq.talk.hearing import formula_heard, substance_heard
+from redoxq.talk.normality import equivalents
 from redoxq.talk.statement import Liquor, Phrase, Portion, Quantity
 from redoxq.units import kelvin, litres, rounded, strength
 
@@ -149,10 +150,9 @@ def _ingredient(portion: Portion, said: Quantity, substance: Substance) -> Ingre
 
 def _equivalents(portion: Portion, said: Quantity, substance: Substance) -> int:
     if portion.basis is None:
-        text = substance.formula.text
         raise RecipeError("Normality says nothing until the ion that counts is named.", said.at,
-                          f'Name it, as in "1 N H2SO4 as H+", or give mol/L: "0.5 M {text}".')
-    return acidic_or_charged(substance.formula, formula_heard(portion.basis), portion.basis.at)
+                          'Name it, as in "1 N H2SO4 as H+", or give the strength in mol/L (M).')
+    return equivalents(substance.formula, formula_heard(portion.basis), portion.basis.at)
 
 
 def _conditions(liquor: Liquor, base: Definition | None) -> tuple[dict[str, Any], frozenset[str]]:

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable
+from collections.abc import Collection, Iterable
 
 from redoxq.jobs.questions import ReactionTerm
 from redoxq.matter.formula import Formula
@@ -17,6 +17,8 @@ AIR_WORDS = {
     Air.oxygen: "under oxygen",
 }
 
+CONDITIONS = frozenset({"temperature", "air"})
+
 
 def temperature_words(temperature: float) -> str:
     """`25 °C` from K."""
@@ -30,14 +32,17 @@ def contact_sentence(metal: str, mass_g: float | None, powder: bool, recipe: Rec
     return f"{form}{amount} in {liquor_words(recipe)}"
 
 
-def liquor_words(recipe: Recipe) -> str:
-    """What a liquor is made of and how it is kept."""
+def liquor_words(recipe: Recipe, told: Collection[str] = CONDITIONS) -> str:
+    """What a liquor is made of and how it is kept, of which only what is to be told."""
     volume = "" if recipe.volume_L == 1.0 else f"{written(recipe.volume_L)} L of "
-    kept = [f"at {temperature_words(recipe.temperature)}"]
+    kept = []
+    if "temperature" in told:
+        kept.append(f"at {temperature_words(recipe.temperature)}")
     if recipe.pH is not None:
         kept.append(f"pH {written(recipe.pH)}")
-    kept.append(AIR_WORDS[recipe.air])
-    return f"{volume}{_contents(recipe)} {', '.join(kept)}"
+    if "air" in told:
+        kept.append(AIR_WORDS[recipe.air])
+    return f"{volume}{_contents(recipe)} {', '.join(kept)}".rstrip()
 
 
 def _contents(recipe: Recipe) -> str:

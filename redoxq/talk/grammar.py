@@ -10,6 +10,7 @@ from lark import Lark
 from lark.exceptions import UnexpectedInput, UnexpectedToken
 from lark.lexer import PatternStr
 
+from redoxq.errors import RedoxqError
 from redoxq.talk.reader import Reader
 
 END = "$END"
@@ -65,8 +66,14 @@ def fixed_word(terminal: str) -> str | None:
     return _fixed_words().get(terminal)
 
 
+_CONDITIONS = frozenset({"AT", "_PH", "UNDER", "WITHOUT", "WITH", "OPEN", "AERATION"})
+"""Openings of the conditions of a liquor, told together where all of them may follow."""
+
+
 def in_words(terminals: Collection[str]) -> list[str]:
     """Name what the parser would accept, most telling first, without repeats."""
+    if set(terminals) >= _CONDITIONS:
+        return [*in_words(set(terminals) - _CONDITIONS), "a condition (at 45 C, pH 2, without air)"]
     ranked = sorted(terminals, key=lambda name: (_ORDER.index(name) if name in _ORDER else len(_ORDER), name))
     return list(dict.fromkeys(_in_words(name) for name in ranked))
 
@@ -89,7 +96,7 @@ def accepted_next(text: str) -> frozenset[str]:
     parser = sentence_grammar().parse_interactive(text)
     try:
         parser.exhaust_lexer()
-    except UnexpectedInput:
+    except (UnexpectedInput, RedoxqError):
         return frozenset()
     accepts: Callable[[], set[str]] = parser.accepts
     return frozenset(accepts())

@@ -26,7 +26,7 @@ from redoxq.talk.canonical import (
     substance_words,
     temperature_words,
 )
-from redoxq.talk.names_heard import formula_heard, metal_heard, substance_heard
+from redoxq.talk.hearing import formula_heard, metal_heard, substance_heard
 from redoxq.talk.statement import About, Contact, Liquor, Phrase, Quantity, Reaction, Statement, Term
 from redoxq.talk.statement import Definition as DefinitionSaid
 from redoxq.units import grams
@@ -134,7 +134,7 @@ def _definition(said: DefinitionSaid, known: Definitions, remarks: tuple[str, ..
     brew = brewed(said.liquor, known)
     return Definition(
         name=name, recipe=brew.recipe, stated=brew.stated,
-        canonical=f"let {name} = {liquor_words(brew.recipe)}",
+        canonical=f"let {name} = {liquor_words(brew.recipe, brew.stated)}",
         assumptions=remarks + brew.assumptions,
     )
 

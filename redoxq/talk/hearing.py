@@ -6,7 +6,7 @@ import difflib
 from collections.abc import Iterable
 from contextlib import suppress
 
-from redoxq.errors import FormulaError, Place, RecipeError, RedoxqError, SentenceError, UnknownNameError
+from redoxq.errors import FormulaError, Place, RedoxqError, SentenceError, UnknownNameError
 from redoxq.matter import names
 from redoxq.matter.formula import Formula, parse_formula
 from redoxq.talk.statement import Phrase
@@ -38,11 +38,18 @@ def metal_heard(phrase: Phrase) -> tuple[str, bool]:
     try:
         return names.metal(spoken), powder
     except RedoxqError as error:
-        with suppress(RedoxqError):
-            substance = names.substance(spoken)
-            raise SentenceError(f"{spoken} is not a metal ({_with_article(substance.kind)}).", phrase.at,
-                                'Say the metal first: "zinc in 0.5 M CuSO4".') from None
-        raise located(error, phrase) from None
+        raise _no_metal(spoken, phrase) or located(error, phrase) from None
+
+
+def _no_metal(spoken: str, phrase: Phrase) -> SentenceError | None:
+    """The error for a substance that is known but no metal."""
+    try:
+        kind = names.substance(spoken).kind
+    except RedoxqError:
+        return None
+    told = "" if kind == "water" else f" but {'an' if kind[0] in 'aeiou' else 'a'} {kind}"
+    message = f"{spoken} is not a metal{told}."
+    return SentenceError(message, phrase.at, 'Say the metal first: "zinc in 0.5 M CuSO4".')
 
 
 def substance_heard(phrase: Phrase, defined: Iterable[str] = ()) -> names.Substance:
@@ -58,7 +65,7 @@ def substance_heard(phrase: Phrase, defined: Iterable[str] = ()) -> names.Substa
     except RedoxqError as error:
         near = difflib.get_close_matches(phrase.text.casefold(), list(defined), 1)
         if near:
-            error.hint = f"Defined is: {near[0]}."
+            error.hint = f"Nearest: {near[0]}, which you defined."
         raise located(error, phrase) from None
 
 
@@ -88,41 +95,8 @@ def located(error: RedoxqError, phrase: Phrase) -> RedoxqError:
     return error
 
 
-def acidic_or_charged(formula: Formula, ion: Formula, at: Place) -> int:
-    """Equivalents that one formula holds when an ion is counted, times its charge.
-
-    Raises
-    ------
-    RecipeError
-        When the formula does not hold that ion.
-    """
-    atoms = dict(formula.atoms)
-    if ion.text == "H+":
-        count = _acidic_hydrogens(formula)
-    elif ion.text == "OH-":
-        count = formula.text.count("OH") and min(atoms.get("O", 0), atoms.get("H", 0))
-    else:
-        count = min(atoms.get(element, 0) // number for element, number in ion.atoms)
-    if not count or not ion.charge:
-        message = f"{formula.text} does not hold {ion.text}."
-        raise RecipeError(message, at, "Name an ion that it gives to water.")
-    return count * abs(ion.charge)
-
-
-def _acidic_hydrogens(formula: Formula) -> int:
-    """Hydrogen written first (H2SO4), or that of carboxyl groups (CH3COOH)."""
-    carboxyl = formula.text.count("COOH")
-    if carboxyl:
-        return carboxyl
-    return formula.atoms[0][1] if formula.atoms and formula.atoms[0][0] == "H" else 0
-
-
 def _without(words: list[str], idle: frozenset[str]) -> str:
     kept = [word for word in words if word.lower() not in idle]
     while kept and kept[0] == "of":
         kept = kept[1:]
     return " ".join(kept or words)
-
-
-def _with_article(kind: str) -> str:
-    return kind if kind == "water" else f"an {kind}" if kind[0] in "aeiou" else f"a {kind}"
