@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
+from contextlib import suppress
 
 from redoxq.errors import RedoxqError, SentenceError
 from redoxq.jobs.questions import (
@@ -112,18 +113,20 @@ def _species(subject: Phrase, temperature: Quantity | None, remarks: tuple[str, 
 
 
 def _subject(subject: Phrase) -> tuple[Formula, str, str]:
-    try:
+    """Formula, name and kind of what a fact sheet is about.
+
+    An ion, or a formula with its phase, is a species of the tables; a bare `CuSO4` is the salt.
+    """
+    with suppress(RedoxqError):
         symbol = names.metal(subject.text)
         return parse_formula(symbol), _element_name(symbol), "metal"
-    except RedoxqError:
-        pass
-    try:
+    with suppress(RedoxqError):
         formula = parse_formula(subject.text)
-        species = catalogue().get(subject.text)
-        return formula, species.name, "ion" if formula.charge else "species"
-    except RedoxqError:
-        substance = substance_heard(subject)
-        return substance.formula, substance.name, substance.kind
+        if formula.charge or formula.phase:
+            species = catalogue().get(substance_words(formula))
+            return formula, species.name, "ion" if formula.charge else "species"
+    substance = substance_heard(subject)
+    return substance.formula, substance.name, substance.kind
 
 
 def _definition(said: DefinitionSaid, known: Definitions, remarks: tuple[str, ...]) -> Definition:
