@@ -1,0 +1,269 @@
+"""Couples of a liquor: each oxidant in it, what it turns into, and the potential at the actual activities."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+from functools import cache
+
+import numpy as np
+
+from redoxq.matter.catalogue import Species, catalogue
+from redoxq.matter.composition import split_component
+from redoxq.matter.tables import read_table
+from redoxq.thermo.constants import F, R
+from redoxq.thermo.forms import Form, dissolved_form, electrode_potential, gas_form, solid_forms, stable_form, states_of
+from redoxq.thermo.halves import ALKALINE, carriers, half_reaction
+from redoxq.thermo.network import PROTON, terms
+from redoxq.thermo.reactions import Reaction
+from redoxq.thermo.speciation import Liquor
+from redoxq.thermo.tableau import Array
+
+LEAST = 1e-12
+"""mol/kg below which an oxidant counts as absent."""
+
+FILM_DECADES = 2.0
+"""A solid forms a film where it holds the dissolved metal below 1e-4 mol/kg, two decades over the trace."""
+
+
+@dataclass(frozen=True, slots=True)
+class Couple:
+    """A row of the table of couples."""
+
+    id: str
+    kind: str
+    oxidised: str
+    reduced: str
+    product: str
+    title: str
+    source: str
+
+
+@dataclass(frozen=True, slots=True)
+class Oxidant:
+    """One oxidant in liquors, a row each.
+
+    Attributes
+    ----------
+    half : Reaction
+        Its reduction, written with the species of the first row.
+    potential : ndarray, shape (rows,)
+        V against SHE at the actual activities.
+    plated : str
+        Symbol of the metal that it leaves, or nothing.
+    changing : frozenset of str
+        Its components before and after.
+    """
+
+    id: str
+    kind: str
+    title: str
+    half: Reaction
+    potential: Array
+    plated: str
+    changing: frozenset[str]
+    product: Species
+    oxidised: Species
+
+
+@dataclass(frozen=True, slots=True)
+class MetalForm:
+    """What a metal turns into in liquors, a row each.
+
+    Attributes
+    ----------
+    potential : ndarray, shape (rows,)
+        Lowest equilibrium potential of the metal with any of its products, V against SHE: it is immune below.
+    half : Reaction
+        The reduction of that product to the metal, of the first row.
+    product : Species
+    film : Species or None
+        The solid that can cover the metal.
+    """
+
+    metal: Species
+    potential: Array
+    half: Reaction
+    product: Species
+    film: Species | None
+    components: frozenset[str]
+
+
+@cache
+def couples() -> tuple[Couple, ...]:
+    """The table of couples."""
+    return tuple(Couple(**{key: row[key] for key in Couple.__slots__}) for row in read_table("couples.csv"))
+
+
+def is_alkaline(liquor: Liquor) -> bool:
+    return bool(liquor.state.pH[0] > ALKALINE)
+
+
+def metal_form(liquor: Liquor, symbol: str) -> MetalForm:
+    """Find the product of lowest potential of a metal, and the solid that may cover it.
+
+    Parameters
+    ----------
+    liquor : Liquor
+    symbol : str
+
+    Returns
+    -------
+    MetalForm
+    """
+    metal = catalogue().metal(symbol)
+    dissolved = [(form, float(split_component(form.component)[1] or 0))
+                 for state in states_of(liquor, symbol) if (form := dissolved_form(liquor, state))]
+    solids = [(form, _mean_state(form.species[0], symbol)) for form in solid_forms(liquor, symbol)]
+    volts = {id(form): electrode_potential(form, charge, liquor.temperature) for form, charge in (*dissolved, *solids)}
+    film = _film(dissolved, solids, volts, liquor)
+    lowest = min((*dissolved, *solids), key=lambda pair: float(volts[id(pair[0])][0]))
+    potential = np.min([volts[id(form)] for form, _ in (*dissolved, *solids)], axis=0)
+    chosen = film if film is not None else lowest[0]
+    product = chosen.species[int(chosen.leading[0])]
+    components = frozenset({c for form, _ in (*dissolved, *solids) for s in form.species for c in s.components
+                            if split_component(c)[0] == symbol} | {f"{symbol}(0)"})
+    half = half_reaction(product, metal, (1, _atoms(product, symbol)), components, carriers(liquor),
+                         is_alkaline(liquor))
+    return MetalForm(metal, potential, half, product, None if film is None else film.species[0], components)
+
+
+def _film(
+    dissolved: list[tuple[Form, float]], solids: list[tuple[Form, float]], volts: Mapping[int, Array], liquor: Liquor
+) -> Form | None:
+    """The most stable solid, where it leaves too little dissolved metal to carry attack on."""
+    if not solids:
+        return None
+    solid, _ = min(solids, key=lambda pair: float(volts[id(pair[0])][0]))
+    thermal = float(R * liquor.temperature[0] / F * np.log(10.0))
+    for form, charge in dissolved:
+        if volts[id(solid)][0] > volts[id(form)][0] + FILM_DECADES * thermal / charge:
+            return None
+    return solid
+
+
+def _mean_state(species: Species, symbol: str) -> float:
+    states = {c: n for c, n in species.components.items() if split_component(c)[0] == symbol}
+    return sum((split_component(c)[1] or 0) * n for c, n in states.items()) / sum(states.values())
+
+
+def _atoms(species: Species, symbol: str) -> int:
+    return dict(species.formula.atoms)[symbol]
+
+
+def oxidants(liquor: Liquor, metal: str) -> list[Oxidant]:
+    """Every oxidant in a liquor that could be tried on a metal.
+
+    Parameters
+    ----------
+    liquor : Liquor
+    metal : str
+        Symbol; its own ions do not plate on it.
+
+    Returns
+    -------
+    list of Oxidant
+    """
+    standing = carriers(liquor)
+    found = [one for couple in couples() if (one := _dissolved_oxidant(liquor, couple, standing)) is not None]
+    for component, total in liquor.totals.items():
+        symbol, state = split_component(component)
+        if symbol != metal and (state or 0) > 0 and float(np.max(total)) > LEAST and catalogue().has_metal(symbol):
+            plating = _plating(liquor, component, standing)
+            if plating is not None:
+                found.append(plating)
+    return found
+
+
+def _plating(liquor: Liquor, component: str, standing: Mapping[str, Species]) -> Oxidant | None:
+    symbol, state = split_component(component)
+    form = dissolved_form(liquor, component)
+    if form is None or not state:
+        return None
+    ion, metal = form.species[int(form.leading[0])], catalogue().metal(symbol)
+    changing = frozenset({component, f"{symbol}(0)"})
+    half = half_reaction(ion, metal, (1, ion.components[component]), changing, standing, is_alkaline(liquor))
+    potential = electrode_potential(form, float(state), liquor.temperature)
+    return Oxidant(f"{symbol} ion", "metal ion", f"{ion.key}", half, potential, symbol, changing, metal, ion)
+
+
+def _dissolved_oxidant(liquor: Liquor, couple: Couple, standing: Mapping[str, Species]) -> Oxidant | None:
+    oxidised = _oxidised(liquor, couple, standing)
+    if oxidised is None:
+        return None
+    reduced, form = _reduced(liquor, couple)
+    if reduced is None:
+        return None
+    changing = frozenset({couple.oxidised, couple.reduced})
+    half = half_reaction(oxidised, reduced, _ratio(oxidised, reduced, couple), changing, standing,
+                         is_alkaline(liquor))
+    values = {reduced: _value_at(liquor, reduced, couple.reduced, form)}
+    return Oxidant(couple.id, couple.kind, couple.title, half, half_potential(liquor, half, values), "", changing,
+                   reduced, oxidised)
+
+
+def _oxidised(liquor: Liquor, couple: Couple, standing: Mapping[str, Species]) -> Species | None:
+    if couple.oxidised == "H(I)":
+        return catalogue().get(PROTON)
+    if couple.oxidised == "O(0)":
+        return catalogue().get("O2(g)") if float(np.max(liquor.oxygen_pressure)) > 0.0 else None
+    total = liquor.totals.get(couple.oxidised)
+    if total is None or float(np.max(total)) <= LEAST:
+        return None
+    if couple.oxidised in standing:
+        return standing[couple.oxidised]
+    form = dissolved_form(liquor, couple.oxidised)
+    return None if form is None else form.species[int(form.leading[0])]
+
+
+def _reduced(liquor: Liquor, couple: Couple) -> tuple[Species | None, Form | None]:
+    if couple.reduced == "O(-II)":
+        return catalogue().get("H2O(l)"), None
+    if couple.product:
+        product = catalogue().get(couple.product)
+        return product, gas_form(liquor, product, couple.reduced)
+    form = stable_form(liquor, couple.reduced)
+    return (None, None) if form is None else (form.species[int(form.leading[0])], form)
+
+
+def _ratio(oxidised: Species, reduced: Species, couple: Couple) -> tuple[int, int]:
+    """How many of each keep the changing element; whole groups are counted by the element they share."""
+    if couple.oxidised == "H(I)":
+        return 0, 1  # the hydrogen ions, or water, come in when the equation is closed
+    if couple.reduced == "O(-II)":
+        return 1, dict(oxidised.formula.atoms)["O"]
+    element, _ = split_component(couple.reduced)
+    if element == "O":
+        return 1, 1
+    left, right = dict(oxidised.formula.atoms)[element], dict(reduced.formula.atoms)[element]
+    common = int(np.lcm(left, right))
+    return common // left, common // right
+
+
+def _value_at(liquor: Liquor, species: Species, component: str, form: Form | None) -> Array:
+    """Chemical potential over RT (water taken off) of a species at the potential that its form has."""
+    total = np.zeros(len(liquor.amounts))
+    for name, number in terms(species.formula, species.components, frozenset()).counts.items():
+        if number:
+            source = form.potential if form is not None and name == component else liquor.potentials[name]
+            total = total + number * source
+    return total
+
+
+def half_potential(liquor: Liquor, half: Reaction, values: Mapping[Species, Array]) -> Array:
+    """Nernst potential of a half reaction in liquors, V against SHE, shape (rows,).
+
+    Parameters
+    ----------
+    liquor : Liquor
+    half : Reaction
+        Written as a reduction.
+    values : mapping of Species to ndarray
+        Potentials over RT of the species that the liquor does not fix, water taken off.
+    """
+    total = np.zeros(len(liquor.amounts))
+    for species, coefficient in zip(half.species, half.coefficients, strict=True):
+        value = values.get(species)
+        total = total + coefficient * (_value_at(liquor, species, "", None) if value is None else value)
+    volts: Array = -R * liquor.temperature / F * total / half.electrons
+    return volts

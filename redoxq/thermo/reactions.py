@@ -1,0 +1,152 @@
+"""Reactions: what balances them, and their standard energies, potential and constant at a temperature."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+
+import numpy as np
+
+from redoxq.errors import ReactionError
+from redoxq.matter.catalogue import Species
+from redoxq.matter.composition import split_component
+from redoxq.thermo.constants import F, R
+from redoxq.thermo.gibbs import covariance, gibbs_energies
+from redoxq.thermo.tableau import Array
+
+LN10 = float(np.log(10.0))
+
+
+@dataclass(frozen=True, slots=True)
+class Reaction:
+    """A balanced reaction of catalogue species.
+
+    Attributes
+    ----------
+    species : tuple of Species
+    coefficients : tuple of int
+        Negative on the left.
+    electrons : int
+        Electrons on the left (positive: a reduction); 0 for a whole reaction.
+    """
+
+    species: tuple[Species, ...]
+    coefficients: tuple[int, ...]
+    electrons: int = 0
+
+    @property
+    def transferred(self) -> int:
+        """Electrons that change hands when the reaction runs once as written; 0 where none do."""
+        if self.electrons:
+            return abs(self.electrons)
+        gained: dict[str, int] = {}
+        for species, coefficient in zip(self.species, self.coefficients, strict=True):
+            for element, total in _states(species).items():
+                gained[element] = gained.get(element, 0) + coefficient * total
+        return sum(change for change in gained.values() if change > 0)
+
+    def __str__(self) -> str:
+        left = [_term(-c, s.key) for s, c in zip(self.species, self.coefficients, strict=True) if c < 0]
+        right = [_term(c, s.key) for s, c in zip(self.species, self.coefficients, strict=True) if c > 0]
+        if self.electrons > 0:
+            left.append(_term(self.electrons, "e-"))
+        elif self.electrons < 0:
+            right.append(_term(-self.electrons, "e-"))
+        return f"{' + '.join(left)} -> {' + '.join(right)}"
+
+
+def _term(count: int, key: str) -> str:
+    return key if count == 1 else f"{count} {key}"
+
+
+def _states(species: Species) -> Mapping[str, int]:
+    """Sum of the oxidation states of each element, hydrogen and oxygen in their odd states included."""
+    totals: dict[str, int] = {}
+    atoms = dict(species.formula.atoms)
+    rest = {"H": atoms.get("H", 0), "O": atoms.get("O", 0)}
+    for component, number in species.components.items():
+        element, state = split_component(component)
+        totals[element] = totals.get(element, 0) + state * number
+        if element in rest:
+            rest[element] -= number
+    totals["H"] = totals.get("H", 0) + rest["H"]
+    totals["O"] = totals.get("O", 0) - 2 * rest["O"]
+    return totals
+
+
+@dataclass(frozen=True, slots=True)
+class StandardQuantities:
+    """Standard quantities of a reaction, arrays of shape (rows,).
+
+    Attributes
+    ----------
+    delta_G, delta_H : ndarray
+        J/mol of the reaction as written.
+    delta_S : ndarray
+        J/(mol K).
+    uncertainty : ndarray
+        Standard uncertainty of delta_G, J/mol.
+    """
+
+    delta_G: Array
+    delta_H: Array
+    delta_S: Array
+    uncertainty: Array
+    temperature: Array
+
+    @property
+    def log10_K(self) -> Array:
+        """Decimal logarithm of the equilibrium constant."""
+        return -self.delta_G / (R * self.temperature * LN10)
+
+    def potential(self, electrons: int) -> Array:
+        """Standard potential in V when `electrons` are transferred."""
+        return -self.delta_G / (electrons * F)
+
+
+def standard_quantities(reaction: Reaction, temperature: Array) -> StandardQuantities:
+    """Standard Gibbs energy, enthalpy and entropy of a reaction.
+
+    Parameters
+    ----------
+    reaction : Reaction
+    temperature : ndarray, shape (rows,)
+        K.
+
+    Returns
+    -------
+    StandardQuantities
+        An electron has the energy of half a molecule of hydrogen less a hydrogen ion, at every temperature
+        (IUPAC: the standard hydrogen electrode is the zero).
+    """
+    coefficients = np.asarray(reaction.coefficients, dtype=float)
+    temperature = np.asarray(temperature, dtype=float)
+
+    def energy(at: Array) -> Array:
+        value: Array = gibbs_energies(reaction.species, at) @ coefficients
+        return value
+
+    delta_G = energy(temperature)
+    delta_S = -(energy(temperature + 0.05) - energy(temperature - 0.05)) / 0.1
+    variance = float(coefficients @ covariance(reaction.species) @ coefficients)
+    return StandardQuantities(
+        delta_G,
+        delta_G + temperature * delta_S,
+        delta_S,
+        np.full_like(temperature, np.sqrt(max(variance, 0.0))),
+        temperature,
+    )
+
+
+def combine(reduction: Reaction, oxidation: Reaction) -> Reaction:
+    """Add two half reactions (both written as reductions), the second reversed, so that electrons cancel."""
+    if reduction.electrons <= 0 or oxidation.electrons <= 0:
+        raise ReactionError("Only reductions with electrons on the left can be combined.")
+    common = int(np.lcm(reduction.electrons, oxidation.electrons))
+    totals: dict[Species, int] = {}
+    for half, factor in ((reduction, common // reduction.electrons), (oxidation, -common // oxidation.electrons)):
+        for species, coefficient in zip(half.species, half.coefficients, strict=True):
+            totals[species] = totals.get(species, 0) + factor * coefficient
+    kept = {species: number for species, number in totals.items() if number}
+    divisor = int(np.gcd.reduce([*kept.values()])) if kept else 1
+    return Reaction(tuple(kept), tuple(number // divisor for number in kept.values()))
