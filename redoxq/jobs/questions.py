@@ -60,6 +60,7 @@ class SpeciesQuestion(_Asked):
     formula : Formula
         With its phase where the sentence names one.
     name : str
+        As the tables or the sentence call it.
     kind : str
         `metal`, or what kind of substance the tables call it.
     temperature : float
@@ -67,7 +68,7 @@ class SpeciesQuestion(_Asked):
     """
 
     formula: Formula
-    name: str
+    name: str = field(compare=False)
     kind: str
     temperature: float
 

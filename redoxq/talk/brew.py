@@ -11,9 +11,9 @@ from redoxq.jobs.questions import Definition
 from redoxq.matter.names import Substance
 from redoxq.matter.recipes import Air, Ingredient, Recipe
 from redoxq.talk.hearing import formula_heard, substance_heard
-from redoxq.talk.normality import equivalents
+from redoxq.talk.ions import equivalents, require_neutral
 from redoxq.talk.statement import Liquor, Phrase, Portion, Quantity
-from redoxq.units import kelvin, litres, rounded, strength
+from redoxq.units import kelvin, litres, rounded, strength, written
 
 ASSUMED_STRENGTH = 1.0
 """mol/L of an ingredient whose strength is not given."""
@@ -78,6 +78,7 @@ def brewed(liquor: Liquor, known: Mapping[str, Definition]) -> Brew:
             raise RecipeError("The volume of a liquor must be above zero.", liquor.volume.at)
     ingredients = _merged(item for pour in poured for item in pour.ingredients)
     whole = Place(liquor.portions[0].name.at.start, liquor.portions[-1].name.at.end)
+    require_neutral(ingredients, whole)
     recipe = _recipe(whole, ingredients=ingredients, volume_L=volume, **kept)
     return Brew(recipe, tuple(text for pour in poured for text in pour.assumptions), stated)
 
@@ -125,17 +126,18 @@ def _water(portion: Portion) -> _Poured:
 
 
 def _unmeasured(portion: Portion, substance: Substance) -> _Poured:
-    if substance.kind == "gas":
-        raise RecipeError(f"How much {portion.name.text} is dissolved?", portion.name.at,
-                          f"Give its strength, such as 0.01 M {portion.name.text}.")
+    """An ingredient without a strength: that of its name, such as battery acid, or 1 M; a gas has none."""
     formula = substance.formula
     if substance.strength is not None:
         amount, unit = substance.strength, "wt%"
-        told = f"{amount:g} wt% {formula.text}, as {substance.name} is sold, since no strength is given"
+        told = f"{substance.name} is taken as {written(amount)} wt% {formula.text}"
+    elif substance.kind == "gas":
+        raise RecipeError(f"How much {portion.name.text} is dissolved?", portion.name.at,
+                          f"Give its strength, such as 0.01 M {portion.name.text}.")
     else:
         amount, unit = ASSUMED_STRENGTH, "M"
         told = f"1 M {formula.text}, since no strength is given"
-    return _Poured((Ingredient(formula, amount, unit, substance.name),), (told,))
+    return _Poured((Ingredient(formula, amount, unit, formula.text),), (told,))
 
 
 def _ingredient(portion: Portion, said: Quantity, substance: Substance) -> Ingredient:
@@ -143,7 +145,7 @@ def _ingredient(portion: Portion, said: Quantity, substance: Substance) -> Ingre
     if unit == "N":
         amount, unit = rounded(amount / _equivalents(portion, said, substance)), "M"
     try:
-        return Ingredient(substance.formula, amount, unit, substance.name)
+        return Ingredient(substance.formula, amount, unit, substance.formula.text)
     except RedoxqError as error:
         raise error.placed(said.at) from None
 

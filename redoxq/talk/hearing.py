@@ -15,9 +15,10 @@ _POWDERS = frozenset({"powder", "dust", "filings"})
 _SHAPES = _POWDERS | frozenset([
     "rod", "rods", "plate", "plates", "sheet", "sheets", "wire", "wires", "bar", "bars", "strip",
     "strips", "foil", "foils", "coupon", "coupons", "tube", "tubes", "pipe", "pipes", "block", "blocks",
-    "ingot", "ingots", "rack", "basket", "anode", "piece", "pieces", "shot", "turnings", "granules",
-    "metal", "metallic", "pure", "clean", "solid", "put", "dip", "immerse", "place", "hang", "dipped",
-    "immersed", "placed", "hung",
+    "ingot", "ingots", "nail", "nails", "screw", "screws", "bolt", "bolts", "coil", "coils", "shaft",
+    "fastener", "fasteners", "sample", "electrode", "part", "parts", "chips", "rack", "basket", "anode",
+    "piece", "pieces", "shot", "turnings", "granules", "metal", "metallic", "pure", "clean", "solid",
+    "put", "dip", "immerse", "place", "hang", "dipped", "immersed", "placed", "hung",
 ])
 _LIQUORS = frozenset(["solution", "solutions", "liquor", "liquors", "aqueous", "dilute", "dissolved"])
 

@@ -87,11 +87,20 @@ def _mass(mass: Quantity) -> float:
 
 def _about(said: About, known: Definitions, remarks: tuple[str, ...]) -> SpeciesQuestion | LiquorQuestion:
     subject = _single_name(said.liquor)
-    if subject is not None and subject.text.casefold() not in known:
+    if subject is not None and not _is_liquor(subject.text, known):
         return _species(subject, said.liquor.temperature, remarks)
     brew = brewed(said.liquor, known)
     return LiquorQuestion(recipe=brew.recipe, canonical=f"about {liquor_words(brew.recipe)}",
                           assumptions=remarks + brew.all_assumptions)
+
+
+def _is_liquor(name: str, known: Definitions) -> bool:
+    """Whether a name alone says how strong it is: a defined liquor, or battery acid."""
+    if name.casefold() in known:
+        return True
+    with suppress(RedoxqError):
+        return names.substance(name).strength is not None
+    return False
 
 
 def _single_name(liquor: Liquor) -> Phrase | None:

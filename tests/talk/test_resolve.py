@@ -118,6 +118,18 @@ def test_tails_in_any_order_ask_the_same() -> None:
     assert len(questions) == 1
 
 
+def test_ions_that_balance() -> None:
+    assert len(made_of(contact("zinc in 0.5 M Cu+2 + 1 M Cl-"))) == 2
+    assert len(made_of(contact("zinc in 0.1 mol/kg Na+ + 0.1 mol/kg Cl- + 1 M HCl"))) == 3
+
+
+def test_names_that_hold_a_strength() -> None:
+    question = contact("iron nail in battery acid")
+    assert made_of(question) == [("H2SO4", 35, "wt%")]
+    assert question.assumptions[0] == "battery acid is taken as 35 wt% H2SO4"
+    assert isinstance(asked("about seawater"), LiquorQuestion)
+
+
 def test_water_alone() -> None:
     assert made_of(contact("aluminium in water")) == []
     assert contact("aluminium in water").canonical == "aluminium in water at 25 °C, open to air"
@@ -197,6 +209,9 @@ def test_reactions_may_use_names() -> None:
     ("zinc in 200 wt% CuSO4", (8, 15), RecipeError, ""),
     ("zinc in 1 M HCl, pH 40", (20, 22), RecipeError, ""),
     ("zinc in 1 M HCl at 400 C", (19, 24), RangeError, ""),
+    ("zinc in 0.5 M Cu+2", (14, 18), RecipeError, "positive charge"),
+    ("zinc in 0.5 M Cu+2 + 0.5 M Cl-", (14, 30), RecipeError, "positive charge"),
+    ("zinc in 1 g/L Na+ + 1 g/L Cl-", (15, 29), RecipeError, "positive charge"),
     ("zinc, 0 g, in water", (6, 9), SentenceError, "above zero"),
     ("zinc in 0 L of water", (8, 11), RecipeError, "above zero"),
     ("let zinc = 1 M HCl", (4, 8), SentenceError, "something already"),
