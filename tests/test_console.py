@@ -10,7 +10,7 @@ from pathlib import Path
 import pytest
 from prompt_toolkit.history import InMemoryHistory
 
-from redoxq.console import HELP, converse, history
+from redoxq.console import EXAMPLES, HELP, converse, history
 from redoxq.errors import RangeError
 from redoxq.jobs.questions import Question
 
@@ -46,6 +46,12 @@ def test_errors_are_shown_and_the_conversation_goes_on() -> None:
 
 def test_quit_ends_and_help_helps() -> None:
     assert talk("help\nquit\nabout Cu+2\n") == (0, HELP + "\n\n")
+
+
+def test_examples_and_help_can_be_asked() -> None:
+    shown = [line.strip() for line in HELP.splitlines() if line.startswith("  ")]
+    assert len(shown) >= 7
+    assert talk("\n".join([*EXAMPLES, *shown]))[0] == 0
 
 
 def test_bytes_that_are_no_text_are_an_error() -> None:

@@ -211,7 +211,7 @@ def test_reactions_may_use_names() -> None:
     ("zinc in 1 M HCl at 400 C", (19, 24), RangeError, ""),
     ("zinc in 0.5 M Cu+2", (14, 18), RecipeError, "positive charge"),
     ("zinc in 0.5 M Cu+2 + 0.5 M Cl-", (14, 30), RecipeError, "positive charge"),
-    ("zinc in 1 g/L Na+ + 1 g/L Cl-", (15, 29), RecipeError, "positive charge"),
+    ("zinc in 1 g/L Na+ + 1 g/L Cl-", (14, 29), RecipeError, "positive charge"),
     ("zinc, 0 g, in water", (6, 9), SentenceError, "above zero"),
     ("zinc in 0 L of water", (8, 11), RecipeError, "above zero"),
     ("let zinc = 1 M HCl", (4, 8), SentenceError, "something already"),

@@ -25,8 +25,8 @@ def contact(text: str) -> Contact:
 def ingredients(text: str) -> list[tuple[str, float | None, str | None]]:
     found: list[tuple[str, float | None, str | None]] = []
     for portion in contact(text).liquor.portions:
-        strength = portion.strength
-        found.append((portion.name.text, strength and strength.value, strength and strength.unit))
+        said = portion.strength
+        found.append((portion.name.text, said.value if said else None, said.unit if said else None))
     return found
 
 
