@@ -220,7 +220,8 @@ def _residues(reach: Reach, web: Network, state: Equilibrium) -> tuple[Residue, 
 def _shown(rows: list[tuple[float, Species]], reach: Reach) -> list[tuple[float, Species]]:
     """The three most abundant, and always the ions that the liquor was made with."""
     named = {o.oxidised.key for o in reach.acting} | {reach.form.product.key}
-    return [(m, s) for k, (m, s) in enumerate(rows) if k < 3 or s.key in named]
+    shown = [(m, s) for k, (m, s) in enumerate(rows) if k < 3 or s.key in named]
+    return sorted(shown, key=lambda pair: pair[1].key not in named)
 
 
 def _mg_per_litre(molality: float, species: Species, reach: Reach, density: float) -> float:

@@ -18,7 +18,7 @@ from redoxq.jobs.answers import (
 )
 from redoxq.show.figures import amount, celsius, plus_minus, signed, significant
 
-LABEL = 15
+LABEL = 18
 WIDTH = 96
 MOST_SPECIES = 12
 

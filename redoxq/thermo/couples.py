@@ -3,27 +3,34 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cache
 
 import numpy as np
 
+from redoxq.errors import DataError
 from redoxq.matter.catalogue import Species, catalogue
 from redoxq.matter.composition import split_component
 from redoxq.matter.tables import read_table
 from redoxq.thermo.constants import F, R
-from redoxq.thermo.forms import Form, dissolved_form, electrode_potential, gas_form, solid_forms, stable_form, states_of
+from redoxq.thermo.forms import (
+    FILM_SOLUBILITY,
+    Form,
+    dissolved_form,
+    electrode_potential,
+    gas_form,
+    solid_forms,
+    stable_form,
+    states_of,
+)
 from redoxq.thermo.halves import ALKALINE, carriers, half_reaction
 from redoxq.thermo.network import PROTON, terms
 from redoxq.thermo.reactions import Reaction
-from redoxq.thermo.speciation import Liquor
+from redoxq.thermo.speciation import Liquor, water_value
 from redoxq.thermo.tableau import Array
 
 LEAST = 1e-12
 """mol/kg below which an oxidant counts as absent."""
-
-FILM_DECADES = 2.0
-"""A solid forms a film where it holds the dissolved metal below 1e-4 mol/kg, two decades over the trace."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -75,10 +82,15 @@ class MetalForm:
     potential : ndarray, shape (rows,)
         Lowest equilibrium potential of the metal with any of its products, V against SHE: it is immune below.
     half : Reaction
-        The reduction of that product to the metal, of the first row.
+        The reduction of `product` to the metal, of the first row.
     product : Species
+        The film where there is one, else the dissolved form of lowest potential.
     film : Species or None
         The solid that can cover the metal.
+    dissolving : tuple of (Reaction, Species)
+        The same for the dissolved form.
+    components : frozenset of str
+        All states of the metal.
     """
 
     metal: Species
@@ -86,7 +98,13 @@ class MetalForm:
     half: Reaction
     product: Species
     film: Species | None
+    dissolving: tuple[Reaction, Species]
     components: frozenset[str]
+
+    def dissolved(self) -> MetalForm:
+        """The same metal going to its dissolved form."""
+        half, product = self.dissolving
+        return replace(self, half=half, product=product)
 
 
 @cache
@@ -115,31 +133,37 @@ def metal_form(liquor: Liquor, symbol: str) -> MetalForm:
     dissolved = [(form, float(split_component(form.component)[1] or 0))
                  for state in states_of(liquor, symbol) if (form := dissolved_form(liquor, state))]
     solids = [(form, _mean_state(form.species[0], symbol)) for form in solid_forms(liquor, symbol)]
+    if not dissolved and not solids:
+        raise DataError(f"The tables hold no ion and no oxide of {metal.name}.")
     volts = {id(form): electrode_potential(form, charge, liquor.temperature) for form, charge in (*dissolved, *solids)}
-    film = _film(dissolved, solids, volts, liquor)
-    lowest = min((*dissolved, *solids), key=lambda pair: float(volts[id(pair[0])][0]))
-    potential = np.min([volts[id(form)] for form, _ in (*dissolved, *solids)], axis=0)
-    chosen = film if film is not None else lowest[0]
-    product = chosen.species[int(chosen.leading[0])]
+
+    def lowest(pairs: list[tuple[Form, float]]) -> Species:
+        form, _ = min(pairs, key=lambda pair: float(volts[id(pair[0])][0]))
+        return form.species[int(form.leading[0])]
+
     components = frozenset({c for form, _ in (*dissolved, *solids) for s in form.species for c in s.components
                             if split_component(c)[0] == symbol} | {f"{symbol}(0)"})
-    half = half_reaction(product, metal, (1, _atoms(product, symbol)), components, carriers(liquor),
-                         is_alkaline(liquor))
-    return MetalForm(metal, potential, half, product, None if film is None else film.species[0], components)
+
+    def reduction(species: Species) -> Reaction:
+        return half_reaction(species, metal, (1, _atoms(species, symbol)), components, carriers(liquor),
+                             is_alkaline(liquor))
+
+    film = lowest(solids) if solids and _covers(liquor, symbol, min(float(volts[id(form)][0]) for form, _ in solids)) \
+        else None
+    ion = lowest(dissolved or solids)
+    product = ion if film is None else film
+    potential = np.min([volts[id(form)] for form, _ in (*dissolved, *solids)], axis=0)
+    return MetalForm(metal, potential, reduction(product), product, film, (reduction(ion), ion), components)
 
 
-def _film(
-    dissolved: list[tuple[Form, float]], solids: list[tuple[Form, float]], volts: Mapping[int, Array], liquor: Liquor
-) -> Form | None:
-    """The most stable solid, where it leaves too little dissolved metal to carry attack on."""
-    if not solids:
-        return None
-    solid, _ = min(solids, key=lambda pair: float(volts[id(pair[0])][0]))
-    thermal = float(R * liquor.temperature[0] / F * np.log(10.0))
-    for form, charge in dissolved:
-        if volts[id(solid)][0] > volts[id(form)][0] + FILM_DECADES * thermal / charge:
-            return None
-    return solid
+def _covers(liquor: Liquor, symbol: str, solid: float) -> bool:
+    """Tell whether a solid of that potential (V) leaves too little dissolved metal to carry attack on."""
+    for state in states_of(liquor, symbol):
+        form = dissolved_form(liquor, state, FILM_SOLUBILITY, fresh=True)
+        charge = float(split_component(state)[1] or 0)
+        if form is not None and solid > electrode_potential(form, charge, liquor.temperature)[0]:
+            return False
+    return True
 
 
 def _mean_state(species: Species, symbol: str) -> float:
@@ -262,8 +286,12 @@ def half_potential(liquor: Liquor, half: Reaction, values: Mapping[Species, Arra
         Potentials over RT of the species that the liquor does not fix, water taken off.
     """
     total = np.zeros(len(liquor.amounts))
+    water = 0
     for species, coefficient in zip(half.species, half.coefficients, strict=True):
         value = values.get(species)
         total = total + coefficient * (_value_at(liquor, species, "", None) if value is None else value)
+        water += coefficient * terms(species.formula, species.components, frozenset()).water
+    if water:  # made of, or broken down to, oxygen in another state
+        total = total + water * water_value(liquor)
     volts: Array = -R * liquor.temperature / F * total / half.electrons
     return volts

@@ -45,7 +45,7 @@ class Form:
     potential: Array
 
 
-def dissolved_form(liquor: Liquor, component: str, total: float = TRACE) -> Form | None:
+def dissolved_form(liquor: Liquor, component: str, total: float = TRACE, fresh: bool = False) -> Form | None:
     """Distribution of a state over ions and complexes, at its own strength or at a trace.
 
     Parameters
@@ -54,6 +54,8 @@ def dissolved_form(liquor: Liquor, component: str, total: float = TRACE) -> Form
     component : str
     total : float
         mol/kg taken where the liquor has none.
+    fresh : bool
+        Take that total even where the liquor has some.
 
     Returns
     -------
@@ -64,7 +66,7 @@ def dissolved_form(liquor: Liquor, component: str, total: float = TRACE) -> Form
     if not species:
         return None
     count, offset = _lines(liquor, component, species)
-    known = liquor.potentials.get(component)
+    known = None if fresh else liquor.potentials.get(component)
     if known is None or not np.all(np.isfinite(known)):
         known = _potential_at(count, offset, total)
     abundance = known[:, None] * count + offset

@@ -9,7 +9,7 @@ import numpy as np
 
 from redoxq.errors import ReactionError
 from redoxq.matter.catalogue import Species
-from redoxq.matter.composition import split_component
+from redoxq.matter.composition import component_atoms, split_component
 from redoxq.thermo.constants import F, R
 from redoxq.thermo.gibbs import covariance, gibbs_energies
 from redoxq.thermo.tableau import Array
@@ -46,16 +46,36 @@ class Reaction:
         return sum(change for change in gained.values() if change > 0)
 
     def __str__(self) -> str:
-        left = [_term(-c, s.key) for s, c in zip(self.species, self.coefficients, strict=True) if c < 0]
-        right = [_term(c, s.key) for s, c in zip(self.species, self.coefficients, strict=True) if c > 0]
-        if self.electrons > 0:
-            left.append(_term(self.electrons, "e-"))
-        elif self.electrons < 0:
-            right.append(_term(-self.electrons, "e-"))
-        return f"{' + '.join(left)} -> {' + '.join(right)}"
+        left = [(-c, s) for s, c in zip(self.species, self.coefficients, strict=True) if c < 0]
+        right = [(c, s) for s, c in zip(self.species, self.coefficients, strict=True) if c > 0]
+        before = [_term(count, one) for count, one in sorted(left, key=lambda pair: _left_rank(pair[1]))]
+        after = [_term(count, one) for count, one in sorted(right, key=lambda pair: _right_rank(pair[1]))]
+        if self.electrons:
+            side = before if self.electrons > 0 else after
+            side.append("e-" if abs(self.electrons) == 1 else f"{abs(self.electrons)} e-")
+        return f"{' + '.join(before)} -> {' + '.join(after)}"
 
 
-def _term(count: int, key: str) -> str:
+_LAST = {"H+": 1, "OH-": 1, "H2O(l)": 2}
+
+
+def _left_rank(species: Species) -> tuple[int, int]:
+    """What reacts in the order of speech: the metal, what attacks it, then acid and water."""
+    return _LAST.get(species.key, 0), 0 if _is_metal(species) else 1
+
+
+def _right_rank(species: Species) -> tuple[int, int]:
+    return _LAST.get(species.key, 0), ("aq", "s", "l", "g").index(species.phase)
+
+
+def _is_metal(species: Species) -> bool:
+    return species.phase in ("s", "l") and len(species.formula.atoms) == 1
+
+
+def _term(count: int, species: Species) -> str:
+    """A species with its number; metals and water go without their phase."""
+    plain = _is_metal(species) or species.key == "H2O(l)"
+    key = species.text if plain else species.key
     return key if count == 1 else f"{count} {key}"
 
 
@@ -66,9 +86,11 @@ def _states(species: Species) -> Mapping[str, int]:
     rest = {"H": atoms.get("H", 0), "O": atoms.get("O", 0)}
     for component, number in species.components.items():
         element, state = split_component(component)
-        totals[element] = totals.get(element, 0) + state * number
-        if element in rest:
-            rest[element] -= number
+        if state is not None:
+            totals[element] = totals.get(element, 0) + state * number
+        for symbol, count in component_atoms(component).items():
+            if symbol in rest:
+                rest[symbol] -= count * number
     totals["H"] = totals.get("H", 0) + rest["H"]
     totals["O"] = totals.get("O", 0) - 2 * rest["O"]
     return totals

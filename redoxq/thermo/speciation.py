@@ -133,22 +133,18 @@ def dissolved_oxygen(liquor: Liquor) -> Array:
     return content
 
 
-def species_value(liquor: Liquor, species: Species) -> Array:
-    """Chemical potential over RT of a species from those of its components, water taken off."""
-    total = np.zeros(len(liquor.amounts))
-    for name, number in terms(species.formula, species.components, frozenset()).counts.items():
-        if number:
-            total = total + number * liquor.potentials[name]
-    return total
+def water_value(liquor: Liquor) -> Array:
+    """Chemical potential of water over RT, at its activity, shape (rows,)."""
+    pure = gibbs_energies((catalogue().get("H2O(l)"),), liquor.temperature)[:, 0]
+    value: Array = pure / (R * liquor.temperature) + liquor.state.ln_water_activity
+    return value
 
 
 def standard_value(liquor: Liquor, species: tuple[Species, ...]) -> Array:
     """Standard chemical potentials over RT with the water in each species taken off, shape (rows, species)."""
-    water_species = catalogue().get("H2O(l)")
-    energies = gibbs_energies((*species, water_species), liquor.temperature) / (R * liquor.temperature[:, None])
+    energies = gibbs_energies(species, liquor.temperature) / (R * liquor.temperature[:, None])
     count = np.array([terms(one.formula, one.components, frozenset()).water for one in species])
-    wet = energies[:, -1:] + liquor.state.ln_water_activity[:, None]
-    values: Array = energies[:, :-1] - count * wet
+    values: Array = energies - count * water_value(liquor)[:, None]
     return values
 
 
