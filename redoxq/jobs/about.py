@@ -35,8 +35,10 @@ def about_species(question: SpeciesQuestion) -> SheetAnswer:
     related = _related(question.formula, rows)
     if not rows and not related:
         near = names.nearest(question.formula.text)
-        raise UnknownNameError(f"The tables hold nothing on {question.formula.text}.",
-                               hint=f"Nearest: {', '.join(near)}." if near else None)
+        raise UnknownNameError(
+            f"The tables hold nothing on {question.formula.text}.",
+            hint=f"Nearest: {', '.join(near)}." if near else None,
+        )
     figures = [figure for row in rows for figure in _figures(row, question.temperature)]
     return SheetAnswer(
         statement=question.canonical,
@@ -53,7 +55,9 @@ def about_species(question: SpeciesQuestion) -> SheetAnswer:
 def _rows(formula: Formula) -> tuple[Species, ...]:
     rows = catalogue().all_of(formula.text)
     if formula.phase:
-        rows = tuple(row for row in rows if row.phase == formula.phase and (not formula.form or row.form == formula.form))
+        rows = tuple(
+            row for row in rows if row.phase == formula.phase and (not formula.form or row.form == formula.form)
+        )
     return rows
 
 
@@ -110,11 +114,15 @@ def about_liquor(question: LiquorQuestion) -> LiquorAnswer:
         statement=question.canonical,
         kind="liquor",
         summary=f"pH {sheet.pH:.2f}, ionic strength {sheet.ionic_strength_mol_kg:.3g} mol/kg, "
-                f"{sheet.density_kg_m3:.0f} kg/m³.",
+        f"{sheet.density_kg_m3:.0f} kg/m³.",
         temperature_K=question.recipe.temperature,
         pressure_bar=1.01325,
-        assumptions=(*question.assumptions, *liquor.composition.notes, *saturation_notes(liquor),
-                     "every oxidation state as it was put in; only acids, complexes and solids are at equilibrium"),
+        assumptions=(
+            *question.assumptions,
+            *liquor.composition.notes,
+            *saturation_notes(liquor),
+            "every oxidation state as it was put in; only acids, complexes and solids are at equilibrium",
+        ),
         validity=validity_notes(liquor),
         data_version=data_version(),
         liquor=sheet,
@@ -127,6 +135,8 @@ def _hazards(pH: float, question: LiquorQuestion) -> tuple[Hazard, ...]:
     """Poisonous gas that a liquor gives off by itself, from what is in it and its pH."""
     found = []
     for row in read_table("liquor_hazards.csv"):
-        if pH < float(row["below_pH"]) and any(row["group"] in item.formula.text for item in question.recipe.ingredients):
+        if pH < float(row["below_pH"]) and any(
+            row["group"] in item.formula.text for item in question.recipe.ingredients
+        ):
             found.append(Hazard(row["gas"], row["topic"], row["text"]))
     return tuple(found)

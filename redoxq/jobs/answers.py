@@ -202,8 +202,15 @@ class ContactAnswer(Answer):
         """Return the keys of the contract; figures of the reaction are those of the leading oxidant."""
         fields = _plain_fields(self)
         leading = fields.pop("leading", None) or {}
-        for key in ("reaction", "electrons", "emf_V", "emf_uncertainty_V", "standard_emf_V", "delta_G_kJ_mol",
-                    "log10_K"):
+        for key in (
+            "reaction",
+            "electrons",
+            "emf_V",
+            "emf_uncertainty_V",
+            "standard_emf_V",
+            "delta_G_kJ_mol",
+            "log10_K",
+        ):
             if key in leading:
                 fields[key] = leading[key]
         if leading:

@@ -82,8 +82,11 @@ class _Branch:
         return max(first, key=lambda row: (row.tried.oxidant.kind in COMMON, row.tried.driving), default=None)
 
     def _is_idle(self, row: int) -> bool:
-        return any(effect.kind == "oxidant" and effect.subject == "idle"
-                   for rule in self.judgement.rules_of_row(row) for effect in rule.effects)
+        return any(
+            effect.kind == "oxidant" and effect.subject == "idle"
+            for rule in self.judgement.rules_of_row(row)
+            for effect in rule.effects
+        )
 
 
 def contact(question: ContactQuestion) -> ContactAnswer:
@@ -103,13 +106,13 @@ def contact(question: ContactQuestion) -> ContactAnswer:
     """
     open_to_air = question.recipe.air in (Air.open, Air.oxygen)
     liquor = speciate(question.recipe)
-    aired = liquor if open_to_air else replace(
-        liquor, oxygen_pressure=oxygen_pressure(Air.open, liquor.temperature))
+    aired = liquor if open_to_air else replace(liquor, oxygen_pressure=oxygen_pressure(Air.open, liquor.temperature))
     form = metal_form(aired, question.metal)
     weighed = tuple(_weighed(aired, form, oxidant) for oxidant in _final(oxidants(aired, question.metal), aired))
     under_air = _judged(aired, form, weighed, True, question.powder)
-    without = _judged(aired, form, tuple(row for row in weighed if row.tried.oxidant.id != "oxygen"), False,
-                      question.powder)
+    without = _judged(
+        aired, form, tuple(row for row in weighed if row.tried.oxidant.id != "oxygen"), False, question.powder
+    )
     here = under_air if open_to_air else without
     end, notes = _end(question, liquor, form, here, open_to_air)
     if end is not None and form.film is not None and not _coats(form, end):
@@ -141,7 +144,7 @@ def _final(found: list[Oxidant], liquor: Liquor) -> list[Oxidant]:
             return True
         before = max((float(total[0]) for name, total in liquor.totals.items() if name in oxidant.changing))
         shift = R * float(liquor.temperature[0]) / F * np.log(max(before / TRACE, 1.0)) / oxidant.half.electrons
-        return float(oxidant.potential[0]) - shift > metal
+        return bool(float(oxidant.potential[0]) - shift > metal)
 
     return [oxidant for oxidant in found if stays(oxidant)]
 
@@ -178,8 +181,10 @@ def _capacity(liquor: Liquor, oxidant: Oxidant) -> float:
         return 4.0 * float(dissolved_oxygen(liquor)[0])
     if oxidant.id == "hydrogen":
         return np.inf
-    return max((oxidant.half.electrons * float(total[0]) for name, total in liquor.totals.items()
-                if name in oxidant.changing), default=0.0)
+    return max(
+        (oxidant.half.electrons * float(total[0]) for name, total in liquor.totals.items() if name in oxidant.changing),
+        default=0.0,
+    )
 
 
 def _judged(liquor: Liquor, form: MetalForm, rows: tuple[_Weighed, ...], air: bool, powder: bool) -> _Branch:
@@ -194,7 +199,9 @@ def _end(
     if branch.verdict != "attacked":
         return None, ()
     kilograms = liquor.composition.water_kg_per_L * question.volume_L
-    metal = None if question.metal_mass_g is None else question.metal_mass_g / molar_mass(form.metal.formula) / kilograms
+    metal = (
+        None if question.metal_mass_g is None else question.metal_mass_g / molar_mass(form.metal.formula) / kilograms
+    )
     by_id = {row.tried.oxidant.id: row.tried for row in branch.acting}
 
     def stops(oxidant: Oxidant, pH: NDArray[np.float64]) -> NDArray[np.bool_]:
@@ -209,22 +216,29 @@ def _end(
 
 
 def _answer(
-    question: ContactQuestion, liquor: Liquor, form: MetalForm, under_air: _Branch, without: _Branch, here: _Branch,
-    end: EndState | None, notes: tuple[str, ...],
+    question: ContactQuestion,
+    liquor: Liquor,
+    form: MetalForm,
+    under_air: _Branch,
+    without: _Branch,
+    here: _Branch,
+    end: EndState | None,
+    notes: tuple[str, ...],
 ) -> ContactAnswer:
     trials = tuple(sorted((_trial(row, here) for row in here.rows), key=lambda trial: -trial.emf_V))
     leading = here.leading
+    tried = None if leading is None else leading.tried
     happenings = _happenings(here, form, end)
     hazards, cautions = _warnings(here)
     amounts = () if end is None else (_amount_note(question),)
     return ContactAnswer(
         statement=question.canonical,
         kind="contact",
-        summary=contact_summary(form, here.verdict, leading and leading.tried, happenings, under_air.verdict,
-                                without.verdict),
+        summary=contact_summary(form, here.verdict, tried, happenings, under_air.verdict, without.verdict),
         temperature_K=question.recipe.temperature,
-        pressure_bar=PRESSURE if question.recipe.temperature <= 373.15 else float(
-            vapour_pressure(question.recipe.temperature)),
+        pressure_bar=PRESSURE
+        if question.recipe.temperature <= 373.15
+        else float(vapour_pressure(question.recipe.temperature)),
         assumptions=(*question.assumptions, *liquor.composition.notes, *saturation_notes(liquor), *amounts, *notes),
         validity=validity_notes(liquor),
         data_version=data_version(),
@@ -238,8 +252,7 @@ def _answer(
         happenings=happenings,
         pace=here.judgement.pace_of() if here.verdict == "attacked" else None,
         end_state=end,
-        reasons=contact_reasons(form, here.judgement, [row.tried for row in here.rows], here.leading and
-                                here.leading.tried, here.verdict),
+        reasons=contact_reasons(form, here.judgement, [row.tried for row in here.rows], tried, here.verdict),
         cautions=cautions,
         hazards=hazards,
         liquor=liquor_sheet(liquor),
@@ -278,8 +291,11 @@ def _happenings(branch: _Branch, form: MetalForm, end: EndState | None) -> tuple
     """What is seen, once each, in the order of cause: the metal, what plates, gas, solids, what practice adds."""
     found: list[Happening] = []
     if branch.acting:
-        found.append(Happening("film" if form.product.phase == "s" and form.film is form.product else "dissolves",
-                               form.product.text))
+        found.append(
+            Happening(
+                "film" if form.product.phase == "s" and form.film is form.product else "dissolves", form.product.text
+            )
+        )
         for row in branch.acting:
             product = row.tried.oxidant.product
             if row.tried.oxidant.plated:
@@ -288,11 +304,16 @@ def _happenings(branch: _Branch, form: MetalForm, end: EndState | None) -> tuple
                 found.append(Happening("gas", product.text))
     elif branch.verdict == "passive" and form.film is not None:
         found.append(Happening("film", form.film.text))
-    found += [Happening("precipitate", key.partition("(s")[0]) for key, amount in (end.precipitates if end else {}).items()
-              if key != form.product.key and amount > NOTABLE]
+    found += [
+        Happening("precipitate", key.partition("(s")[0])
+        for key, amount in (end.precipitates if end else {}).items()
+        if key != form.product.key and amount > NOTABLE
+    ]
     if branch.rows:
-        found += [Happening(effect.subject, effect.text.partition("(s")[0] or form.metal.text)
-                  for _, effect in branch.judgement.effects_of("happening")]
+        found += [
+            Happening(effect.subject, effect.text.partition("(s")[0] or form.metal.text)
+            for _, effect in branch.judgement.effects_of("happening")
+        ]
     return tuple(dict.fromkeys(found))
 
 
@@ -303,4 +324,3 @@ def _warnings(branch: _Branch) -> tuple[tuple[Hazard, ...], tuple[Caution, ...]]
     hazards = [Hazard(effect.subject, effect.topic, effect.text) for _, effect in judgement.effects_of("hazard")]
     cautions = [Caution(effect.subject, effect.text) for _, effect in judgement.effects_of("caution")]
     return tuple(dict.fromkeys(hazards)), tuple(dict.fromkeys(cautions))
-

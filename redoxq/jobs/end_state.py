@@ -6,6 +6,7 @@ from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 
 import numpy as np
+from numpy.typing import NDArray
 
 from redoxq.errors import NotConvergedError
 from redoxq.jobs.answers import EndState, Residue
@@ -28,7 +29,7 @@ EXCESS = 1.0
 STEPS = 24
 ROUNDS = 4
 
-Stops = Callable[[Oxidant, Array], Array]
+Stops = Callable[[Oxidant, Array], NDArray[np.bool_]]
 """Given an oxidant and pH values: True where practice no longer lets it act."""
 
 
@@ -79,8 +80,10 @@ def end_state(reach: Reach, stops: Stops) -> EndState:
         raise NotConvergedError("The end of this contact was not found to the accuracy that an answer needs.")
     rest = _Rest(reach, held=leader)
     extent, stopped = _extent_at(rest, stop, _gas_formed(whole, state, leader))
-    note = (f"{leader.title} is taken to act until pH {stop:.1f}, where practice holds it to be too slow; "
-            "metal and liquor left beyond that are left alone")
+    note = (
+        f"{leader.title} is taken to act until pH {stop:.1f}, where practice holds it to be too slow; "
+        "metal and liquor left beyond that are left alone"
+    )
     return _report(rest, stopped, extent, (note,))
 
 
@@ -96,14 +99,23 @@ class _Rest:
         liquor = reach.liquor
         self.oxygen = float(dissolved_oxygen(liquor)[0]) if any(o.id == "oxygen" for o in acting) else 0.0
         self.gas = "" if held is None else held.product.formula.text
-        extra = [reach.form.metal.formula.text, "O2" if self.oxygen else "", PROTON if liquor.pinned is not None else "",
-                 self.gas]
+        extra = [
+            reach.form.metal.formula.text,
+            "O2" if self.oxygen else "",
+            PROTON if liquor.pinned is not None else "",
+            self.gas,
+        ]
         reagents = liquor.reagents + tuple(text for text in extra if text)
         excluded = frozenset(_forms_of(self.gas)) if self.gas else frozenset()
         plated = {o.product.key for o in acting if o.plated}
-        self.network = network(reagents, Selection(
-            merged=merged, phases=frozenset(plated | {reach.form.metal.key} | (gases if held is None else set())),
-            excluded=excluded))
+        self.network = network(
+            reagents,
+            Selection(
+                merged=merged,
+                phases=frozenset(plated | {reach.form.metal.key} | (gases if held is None else set())),
+                excluded=excluded,
+            ),
+        )
         self.model = activity.choose(self.network.aqueous)
         self.metal = reach.metal_mol if reach.metal_mol is not None else self._excess(acting)
 
@@ -114,7 +126,7 @@ class _Rest:
             if oxidant.id == "hydrogen":
                 capacity += abs(float(sum(n for n in (liquor.amounts[0] @ _protons(liquor),))))
             elif oxidant.id != "oxygen":
-                (before, *_), = (tuple(c for c in oxidant.changing if c in liquor.totals),)
+                ((before, *_),) = (tuple(c for c in oxidant.changing if c in liquor.totals),)
                 capacity += 8.0 * float(liquor.totals[before][0])
         free = any(o.id == "hydrogen" for o in acting)
         return capacity + (ASSUMED_FREE_METAL if free and self.held is None else EXCESS)
@@ -152,8 +164,12 @@ def _protons(liquor: Liquor) -> Array:
 
 def _states_between(oxidant: Oxidant) -> set[str]:
     """All states of a plated metal: it may stop at any of them."""
-    found = {component for species in catalogue().of_elements(frozenset({oxidant.plated, "H", "O", "Cl", "S", "N"}))
-             for component in species.components if split_component(component)[0] == oxidant.plated}
+    found = {
+        component
+        for species in catalogue().of_elements(frozenset({oxidant.plated, "H", "O", "Cl", "S", "N"}))
+        for component in species.components
+        if split_component(component)[0] == oxidant.plated
+    }
     return found | set(oxidant.changing)
 
 
@@ -185,8 +201,11 @@ def _report(rest: _Rest, state: Equilibrium, extent: float, notes: tuple[str, ..
     phases = {species.key: float(amount) * kg for species, amount in zip(web.phases, state.phases[0], strict=True)}
     metal = reach.form.metal
     dissolved = max(rest.metal * kg - phases.pop(metal.key, 0.0), 0.0) * molar_mass(metal.formula)
-    plated = {key: amount * molar_mass(catalogue().get(key).formula) for key, amount in phases.items()
-              if amount > 0 and any(o.plated and o.product.key == key for o in reach.acting)}
+    plated = {
+        key: amount * molar_mass(catalogue().get(key).formula)
+        for key, amount in phases.items()
+        if amount > 0 and any(o.plated and o.product.key == key for o in reach.acting)
+    }
     gases = {key: amount for key, amount in phases.items() if amount > 0 and key.endswith("(g)")}
     if rest.held is not None and extent > 0:
         gases[rest.held.product.key] = extent * kg
@@ -210,8 +229,11 @@ def _residues(reach: Reach, web: Network, state: Equilibrium) -> tuple[Residue, 
     density = reach.liquor.composition.density
     found: list[Residue] = []
     for element in wanted:
-        rows = [(float(np.exp(m)), species) for species, m in zip(web.aqueous, state.ln_molality[0], strict=True)
-                if any(split_component(c)[0] == element for c in species.components)]
+        rows = [
+            (float(np.exp(m)), species)
+            for species, m in zip(web.aqueous, state.ln_molality[0], strict=True)
+            if any(split_component(c)[0] == element for c in species.components)
+        ]
         rows.sort(key=lambda pair: -pair[0])
         found.extend(Residue(s.key, m, _mg_per_litre(m, s, reach, density)) for m, s in _shown(rows, reach))
     return tuple(found)

@@ -29,7 +29,11 @@ class Tried:
 
 
 def contact_facts(
-    liquor: Liquor, form: MetalForm, tried: Sequence[Tried], air: bool, powder: bool,
+    liquor: Liquor,
+    form: MetalForm,
+    tried: Sequence[Tried],
+    air: bool,
+    powder: bool,
     pH: NDArray[np.float64] | None = None,
 ) -> Facts:
     """Collect the facts of one contact.
@@ -56,8 +60,10 @@ def _of_liquor(liquor: Liquor, pH: NDArray[np.float64] | None) -> Mapping[str, A
         "ionic_strength": float(state.ionic_strength[0]),
     }
     columns |= {f"total of {name}": float(total[0]) for name, total in liquor.totals.items()}
-    columns |= {f"activity of {one.key}": float(np.exp(value)) for one, value in
-                zip(liquor.network.aqueous, state.ln_activity[0], strict=True)}
+    columns |= {
+        f"activity of {one.key}": float(np.exp(value))
+        for one, value in zip(liquor.network.aqueous, state.ln_activity[0], strict=True)
+    }
     if pH is not None:
         columns["activity of H+"] = 10.0**-pH
         columns["activity of OH-"] = 10.0 ** (pH - 14.0)

@@ -8,9 +8,8 @@ from itertools import product
 import numpy as np
 
 from redoxq.errors import ReactionError
-from redoxq.jobs.answers import Reason, ReactionAnswer
+from redoxq.jobs.answers import ReactionAnswer, Reason
 from redoxq.jobs.questions import ReactionQuestion, ReactionTerm
-from redoxq.jobs.sheets import sources_of
 from redoxq.matter import names
 from redoxq.matter.catalogue import Species, catalogue
 from redoxq.matter.formula import Formula, parse_formula
@@ -91,9 +90,7 @@ def _reason(species: Species) -> Reason:
     return Reason("table", text, species.source)
 
 
-def _balanced(
-    left: Sequence[ReactionTerm], right: Sequence[ReactionTerm]
-) -> tuple[Side, Side, tuple[str, ...]]:
+def _balanced(left: Sequence[ReactionTerm], right: Sequence[ReactionTerm]) -> tuple[Side, Side, tuple[str, ...]]:
     """Sides with whole numbers; what the user wrote where it balances, else balanced for him."""
     written = _as_written(left), _as_written(right)
     if written[0] is not None and written[1] is not None and is_balanced(written[0], written[1]):
@@ -105,8 +102,10 @@ def _balanced(
             added = [text for text in extra if any(f.text == text for f in _new(found, formulas))]
             note = "the numbers were balanced" + (f", with {' and '.join(added)} added" if added else "")
             return found[0], found[1], (note,)
-    raise ReactionError("This reaction cannot be balanced: some element or the charge stands on one side only.",
-                        hint="Check the formulas; add what is missing, such as O2, Cl- or e-.")
+    raise ReactionError(
+        "This reaction cannot be balanced: some element or the charge stands on one side only.",
+        hint="Check the formulas; add what is missing, such as O2, Cl- or e-.",
+    )
 
 
 def _new(found: tuple[Side, Side], formulas: tuple[list[Formula], list[Formula]]) -> list[Formula]:
@@ -131,8 +130,10 @@ def _with_helpers(left: list[Formula], right: list[Formula], extra: list[Formula
     vectors = null_vectors(formulas, signs)
     if len(vectors) != 1:
         if len(vectors) > 1 and not extra:
-            raise ReactionError("This reaction balances in more ways than one.",
-                                hint="Write the numbers, or split it into two reactions.")
+            raise ReactionError(
+                "This reaction balances in more ways than one.",
+                hint="Write the numbers, or split it into two reactions.",
+            )
         return None
     vector = vectors[0]
     typed = vector[: len(left) + len(right)]
@@ -193,8 +194,14 @@ def _first(formula: Formula, rows: Sequence[Species], notes: list[str]) -> Speci
     zero = [row for row in rows if row.G == 0.0 and row.phase != "aq" and len(row.symbols) == 1]
     if formula.text == "H2O":
         zero = [row for row in rows if row.phase == "l"]
-    chosen = zero[0] if zero else min(rows, key=lambda row: (row.phase == "g", row.phase == "aq" and len(rows) > 1,
-                                                             order.get(row.precipitates, 0)))
+    chosen = (
+        zero[0]
+        if zero
+        else min(
+            rows,
+            key=lambda row: (row.phase == "g", row.phase == "aq" and len(rows) > 1, order.get(row.precipitates, 0)),
+        )
+    )
     if len(rows) > 1 and formula.phase is None and formula.text != "H2O":
         notes.append(f"{formula.text} is taken as {chosen.key}")
     return chosen
@@ -207,8 +214,10 @@ def _ions(formula: Formula) -> list[tuple[Species, int]] | None:
         return None
     usable = [ion for ion in names.ions() if ion.formula.elements <= formula.elements]
     for cation, anion in product(usable, usable):
-        if cation.formula.charge > 0 > anion.formula.charge \
-                and names.salt_text(cation.formula, anion.formula) == formula.text:
+        if (
+            cation.formula.charge > 0 > anion.formula.charge
+            and names.salt_text(cation.formula, anion.formula) == formula.text
+        ):
             plus, minus = catalogue().find(cation.formula.text), catalogue().find(anion.formula.text)
             if plus is None or minus is None:
                 return None

@@ -23,7 +23,8 @@ def liquor_sheet(liquor: Liquor) -> LiquorSheet:
     order = np.argsort(-content)
     species = tuple(
         SpeciesContent(state.network.aqueous[k].key, float(content[k]), float(activity[k]))
-        for k in order if content[k] > LEAST_SHOWN
+        for k in order
+        if content[k] > LEAST_SHOWN
     )
     return LiquorSheet(
         pH=float(state.pH[0]),
@@ -99,14 +100,19 @@ def _osmotic_coefficient(liquor: Liquor) -> float | None:
 
 def precipitates(liquor: Liquor) -> dict[str, float]:
     """Solids that the liquor throws down, mol per kg of water."""
-    return {species.key: float(amount) for species, amount in
-            zip(liquor.network.phases, liquor.state.phases[0], strict=True) if amount > 1e-12}
+    return {
+        species.key: float(amount)
+        for species, amount in zip(liquor.network.phases, liquor.state.phases[0], strict=True)
+        if amount > 1e-12
+    }
 
 
 def saturation_notes(liquor: Liquor) -> tuple[str, ...]:
     """What is said where a solute does not stay dissolved."""
-    return tuple(f"{key} settles out of this liquor ({amount:.2g} mol/kg); it is taken as solid"
-                 for key, amount in precipitates(liquor).items())
+    return tuple(
+        f"{key} settles out of this liquor ({amount:.2g} mol/kg); it is taken as solid"
+        for key, amount in precipitates(liquor).items()
+    )
 
 
 def validity_notes(liquor: Liquor) -> tuple[str, ...]:

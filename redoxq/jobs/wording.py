@@ -15,7 +15,11 @@ COMPUTED = "thermodynamics"
 
 
 def contact_summary(
-    form: MetalForm, verdict: str, leading: Tried | None, happenings: Sequence[Happening], with_air: str,
+    form: MetalForm,
+    verdict: str,
+    leading: Tried | None,
+    happenings: Sequence[Happening],
+    with_air: str,
     without_air: str,
 ) -> str:
     """One plain sentence: the verdict, who does it, what is seen, and whether air decides."""
@@ -88,20 +92,27 @@ def contact_reasons(
                 seen.add(rule.id)
                 chain.append(Reason(rule.id, rule.because, rule.source))
     if verdict == "immune":
-        chain.append(Reason(COMPUTED, "No oxidant of the liquor stands above the metal, so no reaction is possible.",
-                            "second law"))
+        chain.append(
+            Reason(
+                COMPUTED, "No oxidant of the liquor stands above the metal, so no reaction is possible.", "second law"
+            )
+        )
     return tuple(chain)
 
 
 def _metal_reason(form: MetalForm) -> Reason:
     kind = "solid" if form.product.phase == "s" else "dissolved form"
-    text = (f"The most stable {kind} of the metal here is {form.product.key}; {form.half} is at rest at "
-            f"{float(form.potential[0]):+.3f} V vs SHE.")
+    text = (
+        f"The most stable {kind} of the metal here is {form.product.key}; {form.half} is at rest at "
+        f"{float(form.potential[0]):+.3f} V vs SHE."
+    )
     return Reason(COMPUTED, text, sources_of(species.source for species in form.half.species))
 
 
 def _oxidant_reason(one: Tried) -> Reason:
     sense = "above" if one.driving > 0 else "below"
-    text = (f"{one.oxidant.title}: {one.oxidant.half} stands at {float(one.oxidant.potential[0]):+.3f} V vs SHE, "
-            f"{abs(one.driving):.3f} V {sense} the metal (± {one.uncertainty:.3f} V).")
+    text = (
+        f"{one.oxidant.title}: {one.oxidant.half} stands at {float(one.oxidant.potential[0]):+.3f} V vs SHE, "
+        f"{abs(one.driving):.3f} V {sense} the metal (± {one.uncertainty:.3f} V)."
+    )
     return Reason(COMPUTED, text, sources_of(species.source for species in one.oxidant.half.species))

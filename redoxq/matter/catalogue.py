@@ -13,8 +13,23 @@ from redoxq.matter.composition import components
 from redoxq.matter.formula import Formula, parse_formula
 from redoxq.matter.tables import Row, number_in, read_table, table_names
 
-COLUMNS = ("formula", "phase", "form", "name", "G_kJ_mol", "H_kJ_mol", "S_J_mol_K", "Cp_J_mol_K",
-           "uncertainty_kJ_mol", "precipitates", "basis", "source", "derivation", "note", "states")
+COLUMNS = (
+    "formula",
+    "phase",
+    "form",
+    "name",
+    "G_kJ_mol",
+    "H_kJ_mol",
+    "S_J_mol_K",
+    "Cp_J_mol_K",
+    "uncertainty_kJ_mol",
+    "precipitates",
+    "basis",
+    "source",
+    "derivation",
+    "note",
+    "states",
+)
 PHASES = ("aq", "s", "l", "g")
 
 _SYMBOL = re.compile(r"[A-Z][a-z]?")
@@ -91,8 +106,10 @@ class Catalogue:
         self._by_key: dict[str, Species] = {}
         for one in species:
             if one.key in self._by_key:
-                raise DataError(f"{one.file}, row {one.line}: {one.key} stands a second time.",
-                                hint=f"The first is in {self._by_key[one.key].file}.")
+                raise DataError(
+                    f"{one.file}, row {one.line}: {one.key} stands a second time.",
+                    hint=f"The first is in {self._by_key[one.key].file}.",
+                )
             self._by_key[one.key] = one
         self._of_elements: dict[frozenset[str], tuple[Species, ...]] = {}
 
@@ -107,8 +124,9 @@ class Catalogue:
         found = self.find(key)
         if found is None:
             near = difflib.get_close_matches(key, self._by_key, 3)
-            raise UnknownNameError(f'The tables hold no species "{key}".',
-                                   hint=f"Nearest: {', '.join(near)}." if near else None)
+            raise UnknownNameError(
+                f'The tables hold no species "{key}".', hint=f"Nearest: {', '.join(near)}." if near else None
+            )
         return found
 
     def find(self, key: str) -> Species | None:
@@ -145,9 +163,11 @@ class Catalogue:
     @cached_property
     def metals(self) -> Mapping[str, Species]:
         """Condensed elements by symbol, those that no work would hang in a tank left out."""
-        return {one.text: one for one in self.species
-                if one.phase in ("s", "l") and _SYMBOL.fullmatch(one.text) and one.G == 0.0
-                and one.text not in NOT_METALS}
+        return {
+            one.text: one
+            for one in self.species
+            if one.phase in ("s", "l") and _SYMBOL.fullmatch(one.text) and one.G == 0.0 and one.text not in NOT_METALS
+        }
 
 
 NOT_METALS = frozenset({"C", "S", "P", "B", "Si", "I", "Br", "Se", "Te", "As", "Ge"})
@@ -179,6 +199,22 @@ def _species(row: Row, name: str, line: int) -> Species:
     if row["phase"] not in PHASES:
         raise DataError(f'{name}, row {line}, column phase: "{row["phase"]}" is none of {", ".join(PHASES)}.')
     numbers = [number_in(row, column, name, line) for column in COLUMNS[4:9]]
-    return Species(row["formula"].strip(), row["phase"], row["form"], row["name"], numbers[0] or 0.0, numbers[1],
-                   numbers[2], numbers[3], numbers[4] or 0.0, row["precipitates"], row["basis"], row["source"],
-                   row["derivation"], row["note"], row.get("states", ""), name, line)
+    return Species(
+        row["formula"].strip(),
+        row["phase"],
+        row["form"],
+        row["name"],
+        numbers[0] or 0.0,
+        numbers[1],
+        numbers[2],
+        numbers[3],
+        numbers[4] or 0.0,
+        row["precipitates"],
+        row["basis"],
+        row["source"],
+        row["derivation"],
+        row["note"],
+        row.get("states", ""),
+        name,
+        line,
+    )

@@ -172,7 +172,7 @@ def _lone(formula: Formula, atoms: dict[str, int], charge: int) -> dict[str, int
     if set(atoms) == {"H"} and not charge and atoms["H"] == 2:
         return {"H(0)": 2}
     if len(atoms) == 1:
-        (symbol, number), = atoms.items()
+        ((symbol, number),) = atoms.items()
         return _shared(formula, symbol, number, charge)
     remaining = charge - atoms.get("H", 0) + 2 * atoms.get("O", 0)
     others = [symbol for symbol in atoms if symbol not in ("H", "O")]
@@ -199,8 +199,8 @@ def _open_element(symbols: list[str]) -> str:
     return ranked[0]
 
 
-_FIXED = {symbol: 2 for symbol in ("Li", "Na", "K", "Rb", "Cs", "Mg", "Ca", "Sr", "Ba", "Al", "F", "Zn", "Cd", "Ag")}
-_FIXED |= {symbol: 1 for symbol in ("Cl", "Br", "I", "S", "Se", "Te", "N", "P", "As", "C", "B", "Si")}
+_FIXED = dict.fromkeys(("Li", "Na", "K", "Rb", "Cs", "Mg", "Ca", "Sr", "Ba", "Al", "F", "Zn", "Cd", "Ag"), 2)
+_FIXED |= dict.fromkeys(("Cl", "Br", "I", "S", "Se", "Te", "N", "P", "As", "C", "B", "Si"), 1)
 
 
 def _usual(formula: Formula, symbol: str) -> int:

@@ -25,8 +25,14 @@ class Element:
 def elements() -> Mapping[str, Element]:
     """All elements by symbol."""
     return {
-        row["symbol"]: Element(row["symbol"], row["name"], int(row["atomic_number"]), float(row["atomic_weight"]),
-                               float(row["uncertainty"]), row["source"])
+        row["symbol"]: Element(
+            row["symbol"],
+            row["name"],
+            int(row["atomic_number"]),
+            float(row["atomic_weight"]),
+            float(row["uncertainty"]),
+            row["source"],
+        )
         for row in read_table("elements.csv")
     }
 

@@ -95,8 +95,11 @@ def parse_formula(text: str) -> Formula:
     except UnexpectedInput as error:
         start = error.pos_in_stream if isinstance(error.pos_in_stream, int) and error.pos_in_stream >= 0 else len(text)
         start = min(start, max(len(text) - 1, 0))
-        raise FormulaError(f'"{text}" is not a formula that I can read.', Place(start, start + 1),
-                           "Write it like CuSO4, Cu+2, SO4-2, K4[Fe(CN)6], CuSO4.5H2O or AgCl(s).") from None
+        raise FormulaError(
+            f'"{text}" is not a formula that I can read.',
+            Place(start, start + 1),
+            "Write it like CuSO4, Cu+2, SO4-2, K4[Fe(CN)6], CuSO4.5H2O or AgCl(s).",
+        ) from None
     return _built(tree)
 
 
@@ -107,7 +110,7 @@ def _charge_last(text: str) -> str:
     phase = _PHASE.search(plain)
     end = phase[0] if phase else ""
     body = plain[: len(plain) - len(end)]
-    if body == "e-" or not body.endswith(("+", "-", ")", "}")) and not _SIGNED.match(body):
+    if body == "e-" or (not body.endswith(("+", "-", ")", "}")) and not _SIGNED.match(body)):
         return plain
     if marked := _MARKED.match(body):
         return f"{marked[1]}{marked[3]}{marked[2] or marked[4]}{end}"
@@ -123,7 +126,7 @@ def _bare_sign(body: str, signs: str) -> str:
     if len(signs) > 1:
         return f"{body}{signs[0]}{len(signs)}"
     core = body.rstrip("0123456789")
-    digits = body[len(core):]
+    digits = body[len(core) :]
     if not digits or (len(digits) == 1 and not _ELEMENT.match(core)) or body in CHAINS:
         return body + signs
     return f"{core}{digits[:-1]}{signs}{digits[-1]}"

@@ -15,10 +15,28 @@ from redoxq.matter.elements import elements
 from redoxq.matter.formula import Formula, parse_formula
 from redoxq.matter.tables import read_table
 
-_HYDRATES = {"monohydrate": 1, "dihydrate": 2, "trihydrate": 3, "tetrahydrate": 4, "pentahydrate": 5,
-             "hexahydrate": 6, "heptahydrate": 7, "octahydrate": 8, "nonahydrate": 9, "decahydrate": 10,
-             "dodecahydrate": 12, "octadecahydrate": 18}
-_OLD_ELEMENTS = {"aluminum": "Al", "cesium": "Cs", "sulphur": "S", "wolfram": "W", "quicksilver": "Hg", "columbium": "Nb"}
+_HYDRATES = {
+    "monohydrate": 1,
+    "dihydrate": 2,
+    "trihydrate": 3,
+    "tetrahydrate": 4,
+    "pentahydrate": 5,
+    "hexahydrate": 6,
+    "heptahydrate": 7,
+    "octahydrate": 8,
+    "nonahydrate": 9,
+    "decahydrate": 10,
+    "dodecahydrate": 12,
+    "octadecahydrate": 18,
+}
+_OLD_ELEMENTS = {
+    "aluminum": "Al",
+    "cesium": "Cs",
+    "sulphur": "S",
+    "wolfram": "W",
+    "quicksilver": "Hg",
+    "columbium": "Nb",
+}
 _ACIDS = frozenset({"HCl", "HBr", "HI", "HF", "H2SO4", "HNO3", "H3PO4", "HClO4", "HClO3", "HCN"})
 _BASES = frozenset({"NaOH", "KOH", "LiOH", "NH3", "Ca(OH)2", "Ba(OH)2"})
 _WORD_FORM = re.compile(r"[A-Za-z][a-z']*(\([ivIV]+\))?([ -][A-Za-z'()]+)*$")
@@ -57,8 +75,10 @@ class Ion:
 @cache
 def ions() -> tuple[Ion, ...]:
     """The table of ions."""
-    return tuple(Ion(parse_formula(row["formula"]), tuple(row["names"].split("|")), row["usual"] == "1")
-                 for row in read_table("ions.csv"))
+    return tuple(
+        Ion(parse_formula(row["formula"]), tuple(row["names"].split("|")), row["usual"] == "1")
+        for row in read_table("ions.csv")
+    )
 
 
 @cache
@@ -136,8 +156,12 @@ def _named(spoken: str) -> Substance | None:
 
 def _ion_named(folded: str) -> Substance | None:
     ion = _ions_by_name().get(re.sub(r"\s*\b(ions?|cations?|anions?)$", "", folded))
-    if ion is None or (ion.formula.charge > 0 and folded in ion.names and not folded.endswith(("ous", "ic", ")"))
-                       and "ion" not in folded):
+    if ion is None or (
+        ion.formula.charge > 0
+        and folded in ion.names
+        and not folded.endswith(("ous", "ic", ")"))
+        and "ion" not in folded
+    ):
         return None
     return Substance(ion.formula, folded, "ion")
 
@@ -169,10 +193,11 @@ def _times(ion: Formula, count: int) -> str:
 
 
 def _looks_like_formula(spoken: str) -> bool:
-    if not _WORD_FORM.match(spoken) or spoken[0].isupper() and not spoken[1:].isalpha():
+    if not _WORD_FORM.match(spoken) or (spoken[0].isupper() and not spoken[1:].isalpha()):
         return True
-    return spoken[0].isupper() and len(spoken) <= 12 and " " not in spoken and spoken not in (spoken.capitalize(),) \
-        or spoken in elements()
+    return (
+        spoken[0].isupper() and len(spoken) <= 12 and " " not in spoken and spoken not in (spoken.capitalize(),)
+    ) or spoken in elements()
 
 
 def _from_formula(spoken: str) -> Substance:
@@ -234,4 +259,6 @@ def known_names(kind: str | None = None) -> list[str]:
 
 
 def _hint(near: list[str]) -> str | None:
-    return f"Nearest: {', '.join(near)}." if near else "Write a formula such as CuSO4, or a name such as copper sulfate."
+    return (
+        f"Nearest: {', '.join(near)}." if near else "Write a formula such as CuSO4, or a name such as copper sulfate."
+    )

@@ -12,7 +12,16 @@ from redoxq.matter.formula import Formula
 COLDEST, HOTTEST = 273.15, 423.15
 LOWEST_PH, HIGHEST_PH = -2.0, 16.0
 
-MOST = {"mol/L": 40.0, "M": 40.0, "mol/kg": 60.0, "g/L": 2500.0, "mg/L": 2.5e6, "ppm": 1e6, "wt%": 100.0, "g/kg": 1000.0}
+MOST = {
+    "mol/L": 40.0,
+    "M": 40.0,
+    "mol/kg": 60.0,
+    "g/L": 2500.0,
+    "mg/L": 2.5e6,
+    "ppm": 1e6,
+    "wt%": 100.0,
+    "g/kg": 1000.0,
+}
 """Strengths that nothing can have."""
 
 
@@ -43,14 +52,17 @@ class Ingredient:
 
     def __post_init__(self) -> None:
         if not math.isfinite(self.amount) or self.amount < 0:
-            raise RecipeError(f"A strength of {self.amount:g} {self.unit} is not possible.",
-                              hint="A strength is zero or more.")
+            raise RecipeError(
+                f"A strength of {self.amount:g} {self.unit} is not possible.", hint="A strength is zero or more."
+            )
         limit = MOST.get(self.unit)
         if limit is None:
             raise RecipeError(f"I know no strength in {self.unit}.", hint="Use M, mol/kg, g/L, mg/L, ppm, wt% or g/kg.")
         if self.amount >= limit:
-            raise RecipeError(f"{self.amount:g} {self.unit} {self.name} is not possible: that leaves no water.",
-                              hint=f"Stay below {limit:g} {self.unit}.")
+            raise RecipeError(
+                f"{self.amount:g} {self.unit} {self.name} is not possible: that leaves no water.",
+                hint=f"Stay below {limit:g} {self.unit}.",
+            )
 
 
 @dataclass(frozen=True, slots=True)
@@ -65,11 +77,15 @@ class Recipe:
 
     def __post_init__(self) -> None:
         if self.pH is not None and not LOWEST_PH <= self.pH <= HIGHEST_PH:
-            raise RecipeError(f"pH {self.pH:g} is outside what a liquor in water can have.",
-                              hint=f"Give a pH between {LOWEST_PH:g} and {HIGHEST_PH:g}.")
+            raise RecipeError(
+                f"pH {self.pH:g} is outside what a liquor in water can have.",
+                hint=f"Give a pH between {LOWEST_PH:g} and {HIGHEST_PH:g}.",
+            )
         if not COLDEST <= self.temperature <= HOTTEST:
-            raise RangeError(f"{self.temperature - 273.15:g} °C is outside the reach of the tables.",
-                             hint="Liquors are answered from 0 to 100 °C, with less certainty to 150 °C.")
+            raise RangeError(
+                f"{self.temperature - 273.15:g} °C is outside the reach of the tables.",
+                hint="Liquors are answered from 0 to 100 °C, with less certainty to 150 °C.",
+            )
         shares = sum(item.amount / MOST[item.unit] for item in self.ingredients if item.unit in ("wt%", "g/kg", "ppm"))
         if shares >= 1.0:
             raise RecipeError("The ingredients leave no water.", hint="Their weight shares must stay below 100 %.")

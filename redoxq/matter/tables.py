@@ -57,8 +57,10 @@ def rows_of(text: str, name: str) -> tuple[Row, ...]:
         if not any(cells):
             continue
         if len(cells) > len(header):
-            raise DataError(f"{name}, row {number}: {len(cells)} cells under {len(header)} columns.",
-                            hint="Put text that holds a comma between double quotes.")
+            raise DataError(
+                f"{name}, row {number}: {len(cells)} cells under {len(header)} columns.",
+                hint="Put text that holds a comma between double quotes.",
+            )
         cells += [""] * (len(header) - len(cells))
         rows.append(dict(zip(header, cells, strict=True)))
     return tuple(rows)

@@ -41,8 +41,10 @@ def null_vectors(formulas: Sequence[Formula], signs: Sequence[int]) -> list[list
         A basis of the solutions; each with coprime entries and the first of them that is not zero positive.
     """
     keys = sorted({key for formula in formulas for key in content(formula)})
-    matrix = [[Fraction(sign * content(formula).get(key, 0)) for formula, sign in zip(formulas, signs, strict=True)]
-              for key in keys]
+    matrix = [
+        [Fraction(sign * content(formula).get(key, 0)) for formula, sign in zip(formulas, signs, strict=True)]
+        for key in keys
+    ]
     pivots = _reduce(matrix, len(formulas))
     free = [column for column in range(len(formulas)) if column not in pivots]
     return [_whole(_solution(matrix, pivots, column, len(formulas))) for column in free]

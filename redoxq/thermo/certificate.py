@@ -69,7 +69,7 @@ def certify(state: Equilibrium, amounts: Array, pinned: Array | None = None) -> 
     )
     balance = _balances(state, amounts)
     with np.errstate(invalid="ignore"):
-        holds = (state.converged & (balance < BALANCE) & (mass_action < MASS_ACTION) & (saturation < SATURATION))
+        holds = state.converged & (balance < BALANCE) & (mass_action < MASS_ACTION) & (saturation < SATURATION)
     return Certificate(balance, mass_action, saturation, holds)
 
 

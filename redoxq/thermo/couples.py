@@ -130,8 +130,11 @@ def metal_form(liquor: Liquor, symbol: str) -> MetalForm:
     MetalForm
     """
     metal = catalogue().metal(symbol)
-    dissolved = [(form, float(split_component(form.component)[1] or 0))
-                 for state in states_of(liquor, symbol) if (form := dissolved_form(liquor, state))]
+    dissolved = [
+        (form, float(split_component(form.component)[1] or 0))
+        for state in states_of(liquor, symbol)
+        if (form := dissolved_form(liquor, state))
+    ]
     solids = [(form, _mean_state(form.species[0], symbol)) for form in solid_forms(liquor, symbol)]
     if not dissolved and not solids:
         raise DataError(f"The tables hold no ion and no oxide of {metal.name}.")
@@ -141,15 +144,27 @@ def metal_form(liquor: Liquor, symbol: str) -> MetalForm:
         form, _ = min(pairs, key=lambda pair: float(volts[id(pair[0])][0]))
         return form.species[int(form.leading[0])]
 
-    components = frozenset({c for form, _ in (*dissolved, *solids) for s in form.species for c in s.components
-                            if split_component(c)[0] == symbol} | {f"{symbol}(0)"})
+    components = frozenset(
+        {
+            c
+            for form, _ in (*dissolved, *solids)
+            for s in form.species
+            for c in s.components
+            if split_component(c)[0] == symbol
+        }
+        | {f"{symbol}(0)"}
+    )
 
     def reduction(species: Species) -> Reaction:
-        return half_reaction(species, metal, (1, _atoms(species, symbol)), components, carriers(liquor),
-                             is_alkaline(liquor))
+        return half_reaction(
+            species, metal, (1, _atoms(species, symbol)), components, carriers(liquor), is_alkaline(liquor)
+        )
 
-    film = lowest(solids) if solids and _covers(liquor, symbol, min(float(volts[id(form)][0]) for form, _ in solids)) \
+    film = (
+        lowest(solids)
+        if solids and _covers(liquor, symbol, min(float(volts[id(form)][0]) for form, _ in solids))
         else None
+    )
     ion = lowest(dissolved or solids)
     product = ion if film is None else film
     potential = np.min([volts[id(form)] for form, _ in (*dissolved, *solids)], axis=0)
@@ -219,11 +234,19 @@ def _dissolved_oxidant(liquor: Liquor, couple: Couple, standing: Mapping[str, Sp
     if reduced is None:
         return None
     changing = frozenset({couple.oxidised, couple.reduced})
-    half = half_reaction(oxidised, reduced, _ratio(oxidised, reduced, couple), changing, standing,
-                         is_alkaline(liquor))
+    half = half_reaction(oxidised, reduced, _ratio(oxidised, reduced, couple), changing, standing, is_alkaline(liquor))
     values = {reduced: _value_at(liquor, reduced, couple.reduced, form)}
-    return Oxidant(couple.id, couple.kind, couple.title, half, half_potential(liquor, half, values), "", changing,
-                   reduced, oxidised)
+    return Oxidant(
+        couple.id,
+        couple.kind,
+        couple.title,
+        half,
+        half_potential(liquor, half, values),
+        "",
+        changing,
+        reduced,
+        oxidised,
+    )
 
 
 def _oxidised(liquor: Liquor, couple: Couple, standing: Mapping[str, Species]) -> Species | None:

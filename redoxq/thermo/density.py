@@ -134,8 +134,10 @@ def molalities(recipe: Recipe) -> Composition:
     for _ in range(60):
         grams, water_grams = _grams_per_litre(items, density)
         if water_grams < LEAST_WATER * density:
-            raise RecipeError("These strengths together leave no water in a litre of liquor.",
-                              hint="Lower them, or give them by weight (wt%).")
+            raise RecipeError(
+                "These strengths together leave no water in a litre of liquor.",
+                hint="Lower them, or give them by weight (wt%).",
+            )
         total = sum(grams) + water_grams
         shares: dict[str, float] = {}
         for dry, mass in zip(anhydrous, grams, strict=True):
@@ -146,8 +148,11 @@ def molalities(recipe: Recipe) -> Composition:
         density = new
     molality = np.array([mass / molar_mass(dry) for dry, mass in zip(anhydrous, grams, strict=True)])
     unknown = sorted({dry.text for dry in anhydrous if dry.text not in apparent_densities()})
-    notes = () if not unknown else (f"the density counts {', '.join(unknown)} as a salt of "
-                                    f"{USUAL_APPARENT_DENSITY:.0f} kg/m³ in solution",)
+    notes = (
+        ()
+        if not unknown
+        else (f"the density counts {', '.join(unknown)} as a salt of {USUAL_APPARENT_DENSITY:.0f} kg/m³ in solution",)
+    )
     kilograms = water_grams / 1000.0
     return Composition(tuple(anhydrous), molality / kilograms, density, kilograms, notes)
 
@@ -162,8 +167,11 @@ def _grams_per_litre(items: Sequence[Ingredient], density: float) -> tuple[list[
     fixed = [_fixed_grams(item, mass_of_liquor) for item in items]
     crystal = [_crystal_share(item.formula) for item in items]
     known = sum(mass for mass in fixed if mass is not None)
-    per_kg = sum(item.amount * molar_mass(_anhydrous(item.formula)) / 1000.0
-                 for item, mass in zip(items, fixed, strict=True) if mass is None)
+    per_kg = sum(
+        item.amount * molar_mass(_anhydrous(item.formula)) / 1000.0
+        for item, mass in zip(items, fixed, strict=True)
+        if mass is None
+    )
     bound = sum(mass * share for mass, share in zip(fixed, crystal, strict=True) if mass is not None)
     # Water = liquor - dry solutes; what is given by mol/kg takes its part of that water.
     water_grams = (mass_of_liquor - known + bound) / (1.0 + per_kg)

@@ -149,8 +149,11 @@ def _surroundings(
     """ln gamma of each species, ln of the water activity, ln of the kilograms of water."""
     aqueous = len(network.aqueous)
     content = np.exp(np.clip(part.ln_molality, -700.0, 10.0))
-    bound = (content @ network.water[:aqueous] + part.phases @ network.water[aqueous : network.shape.first_pinned]
-             + part.sources @ network.water[network.shape.first_pinned :])
+    bound = (
+        content @ network.water[:aqueous]
+        + part.phases @ network.water[aqueous : network.shape.first_pinned]
+        + part.sources @ network.water[network.shape.first_pinned :]
+    )
     water = 1.0 + WATER_KG_PER_MOL * (amounts @ network.reagent_water - bound)
     water = np.clip(water, 0.02, 50.0)
     ln_gamma, ln_activity = model.ln_gamma(content / water[:, None], temperature)
@@ -226,5 +229,3 @@ class _Mixer:
         shift = (points[:, others] - points[:, slot : slot + 1]).transpose(0, 2, 1) @ share[..., None]
         mixed: Array = points[:, slot] + shift[..., 0]
         return mixed
-
-

@@ -79,8 +79,11 @@ def solid_forms(liquor: Liquor, element: str) -> list[Form]:
     The potential is that of the neutral atom plus the electrons it lost, an atom of the element: the energy that
     makes the solid from metal and liquor.
     """
-    solids = [species for species in _candidates(liquor, element) if species.phase == "s"
-              and species.precipitates in FORMING and oxidation_number(species, element) > 0]
+    solids = [
+        species
+        for species in _candidates(liquor, element)
+        if species.phase == "s" and species.precipitates in FORMING and oxidation_number(species, element) > 0
+    ]
     if not solids:
         return []
     standard = standard_value(liquor, tuple(solids))
@@ -114,8 +117,12 @@ def stable_form(liquor: Liquor, component: str) -> Form | None:
 
 def states_of(liquor: Liquor, element: str) -> tuple[str, ...]:
     """Oxidation states above zero in which the element can stand dissolved in the liquor."""
-    found = {component for species in _candidates(liquor, element) if species.phase == "aq"
-             for component in _states(species, element)}
+    found = {
+        component
+        for species in _candidates(liquor, element)
+        if species.phase == "aq"
+        for component in _states(species, element)
+    }
     return tuple(sorted(component for component in found if (split_component(component)[1] or 0) > 0))
 
 
@@ -144,16 +151,19 @@ def _candidates(liquor: Liquor, element: str) -> tuple[Species, ...]:
     held = {name for name in liquor.network.components}
     elements = {symbol for species in liquor.network.species for symbol, _ in species.formula.atoms}
     return tuple(
-        species for species in catalogue().of_elements(frozenset(elements | {element, "H", "O"}))
-        if _atoms(species, element)
-        and all(c in held or split_component(c)[0] == element for c in species.components)
+        species
+        for species in catalogue().of_elements(frozenset(elements | {element, "H", "O"}))
+        if _atoms(species, element) and all(c in held or split_component(c)[0] == element for c in species.components)
     )
 
 
 def _species_of(liquor: Liquor, component: str, phase: str) -> tuple[Species, ...]:
     element, _ = split_component(component)
-    return tuple(species for species in _candidates(liquor, element)
-                 if species.phase == phase and set(_states(species, element)) == {component})
+    return tuple(
+        species
+        for species in _candidates(liquor, element)
+        if species.phase == phase and set(_states(species, element)) == {component}
+    )
 
 
 def _sum(liquor: Liquor, species: Species, without: str) -> Array:

@@ -90,8 +90,11 @@ def _enthalpy(species: Species) -> tuple[float, str]:
         heat = derivation.delta_H
         electrons = derivation.terms.get(ELECTRON, 0)
         given = derivation.delta_G if electrons else (0.0 if heat is None else heat)
-        total = sum(n * _enthalpy(catalogue().get(key))[0] for key, n in derivation.terms.items()
-                    if key not in (species.key, ELECTRON))
+        total = sum(
+            n * _enthalpy(catalogue().get(key))[0]
+            for key, n in derivation.terms.items()
+            if key not in (species.key, ELECTRON)
+        )
         return (given * 1000.0 - total) / own, "constant of reaction held"
     return species.G * 1000.0, "unknown"
 
@@ -144,7 +147,7 @@ def reference_elements() -> Mapping[str, tuple[float, float | None]]:
     found: dict[str, tuple[float, float | None]] = {}
     for species in catalogue().species:
         if species.phase != "aq" and species.G == 0.0 and len(species.symbols) == 1 and species.S is not None:
-            (symbol, count), = species.formula.atoms
+            ((symbol, count),) = species.formula.atoms
             found.setdefault(symbol, (species.S / count, None if species.Cp is None else species.Cp / count))
     return found
 
@@ -152,8 +155,9 @@ def reference_elements() -> Mapping[str, tuple[float, float | None]]:
 @cache
 def reference_keys() -> frozenset[str]:
     """Keys of the elements in their reference states."""
-    return frozenset(one.key for one in catalogue().species
-                     if one.phase != "aq" and one.G == 0.0 and len(one.symbols) == 1)
+    return frozenset(
+        one.key for one in catalogue().species if one.phase != "aq" and one.G == 0.0 and len(one.symbols) == 1
+    )
 
 
 def covariance(species: Sequence[Species], temperature: float = T0) -> Array:
@@ -179,4 +183,6 @@ def _temperature_variance(species: Species, temperature: float) -> float:
     slope = 5.0 if made.basis.startswith("table") else 40.0
     capacity = 10.0 if made.basis.endswith("table") else 60.0
     step = abs(temperature - T0)
-    return float((slope * 0.2 * step if slope == 5.0 else slope * step) ** 2 * 0.25 + (capacity * step**2 / (2 * T0)) ** 2)
+    return float(
+        (slope * 0.2 * step if slope == 5.0 else slope * step) ** 2 * 0.25 + (capacity * step**2 / (2 * T0)) ** 2
+    )

@@ -20,7 +20,7 @@ def carriers(liquor: Liquor, row: int = 0) -> dict[str, Species]:
     best: dict[str, tuple[float, Species]] = {}
     for species, content in zip(liquor.network.aqueous, liquor.state.ln_molality[row], strict=True):
         if len(species.components) == 1:
-            (component, number), = species.components.items()
+            ((component, number),) = species.components.items()
             rank = float(content) - (0.0 if number == 1 else 5.0)
             if component not in best or rank > best[component][0]:
                 best[component] = (rank, species)

@@ -92,8 +92,9 @@ class _Search:
         closed = (fixed | (np.abs(residual) <= np.maximum(BALANCE * own, NOISE * scale))).all(axis=1)
         pending = good.copy()
         pending[pending] = ~self._improve_basis(tableau, rows[pending], logs[pending], closed[pending])
-        pending[pending] = ~self._change_phase(tableau, rows[pending], logs[pending], residual[pending],
-                                               own[pending], closed[pending])
+        pending[pending] = ~self._change_phase(
+            tableau, rows[pending], logs[pending], residual[pending], own[pending], closed[pending]
+        )
         done = pending & closed
         self.converged[rows[done]] = True
         pending &= ~closed
@@ -114,7 +115,12 @@ class _Search:
     # -- steps ------------------------------------------------------------------------------------
 
     def _newton(
-        self, tableau: Tableau, rows: Integers, aqueous: Array, signal: Array, totals: Array,
+        self,
+        tableau: Tableau,
+        rows: Integers,
+        aqueous: Array,
+        signal: Array,
+        totals: Array,
         fixed: NDArray[np.bool_],
     ) -> None:
         free = np.flatnonzero(~fixed)
@@ -172,7 +178,12 @@ class _Search:
     # -- phases -----------------------------------------------------------------------------------
 
     def _change_phase(
-        self, tableau: Tableau, rows: Integers, logs: Array, residual: Array, own: Array,
+        self,
+        tableau: Tableau,
+        rows: Integers,
+        logs: Array,
+        residual: Array,
+        own: Array,
         closed: NDArray[np.bool_],
     ) -> NDArray[np.bool_]:
         """Drop the most negative phase or add the most supersaturated one; tell which rows changed."""
@@ -203,8 +214,8 @@ class _Search:
         return result
 
     def _near(self, residual: Array, own: Array, members: Integers) -> NDArray[np.bool_]:
-        free = (members < self.shape.aqueous)
-        near: NDArray[np.bool_] = (np.abs(residual) <= 0.1 * own)[:, free].all(axis=1)
+        free = members < self.shape.aqueous
+        near: NDArray[np.bool_] = np.all((np.abs(residual) <= 0.1 * own)[:, free], axis=1)
         return near
 
     def _drop(self, tableau: Tableau, row: int, slot: int, logs: Array) -> None:
@@ -217,8 +228,7 @@ class _Search:
         shape = self.shape
         members = np.asarray(tableau.basis)
         column = tableau.nu[phase]
-        held = np.where(members < shape.aqueous, np.exp(np.clip(self.x[row], -700.0, 200.0)),
-                        np.maximum(residual, 0.0))
+        held = np.where(members < shape.aqueous, np.exp(np.clip(self.x[row], -700.0, 200.0)), np.maximum(residual, 0.0))
         usable = (column > 1e-9) & (members < shape.first_pinned)
         if not usable.any():
             usable = (np.abs(column) > 1e-9) & (members < shape.first_pinned)
@@ -238,9 +248,7 @@ def _tempered(newton: Array, nu: Array, aqueous: Array, totals: Array) -> Array:
     return tempered
 
 
-def minimise(
-    shape: Stoichiometry, g: Array, amounts: Array, start: tuple[list[Basis], Array] | None = None
-) -> Minimum:
+def minimise(shape: Stoichiometry, g: Array, amounts: Array, start: tuple[list[Basis], Array] | None = None) -> Minimum:
     """Minimise the Gibbs energy of every row at fixed activity coefficients.
 
     Parameters
@@ -283,9 +291,7 @@ def minimise(
     return _collect(search, feasible)
 
 
-def _first_logarithms(
-    shape: Stoichiometry, bases: list[Basis], feasible: NDArray[np.bool_], amounts: Array
-) -> Array:
+def _first_logarithms(shape: Stoichiometry, bases: list[Basis], feasible: NDArray[np.bool_], amounts: Array) -> Array:
     x = np.zeros((len(bases), shape.components))
     for tableau, rows in shape.groups(bases, np.flatnonzero(feasible)):
         totals = amounts[rows] @ tableau.reagents
@@ -324,5 +330,6 @@ def _collect(search: _Search, feasible: NDArray[np.bool_]) -> Minimum:
         potentials[members] = (search.x[members] + basis_g) @ tableau.inverse.T
         held = np.where(shape.fixed(tableau.basis), np.inf, search.x[members])
         poise[members] = np.exp(np.minimum(held.min(axis=1), 200.0))
-    return Minimum(ln_molality, phases, sources, potentials, poise, search.converged & feasible,
-                   search.passes, search.bases)
+    return Minimum(
+        ln_molality, phases, sources, potentials, poise, search.converged & feasible, search.passes, search.bases
+    )

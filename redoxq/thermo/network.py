@@ -53,13 +53,13 @@ def terms(formula: Formula, states: Mapping[str, int], merged: frozenset[str]) -
             counts[component] = number
             charge -= number * component_charge(component)
         elif element == "H":
-            electrons += number * (1 - state)
+            electrons += number * (1 - (state or 0))
         elif element == "O":
             water += number
-            electrons -= number * (state + 2)
+            electrons -= number * ((state or 0) + 2)
         else:
             counts[element] = counts.get(element, 0) + number
-            electrons -= number * state
+            electrons -= number * (state or 0)
     return Terms({**counts, PROTON: charge + electrons, ELECTRON: electrons}, water)
 
 
@@ -151,8 +151,9 @@ def network(reagents: tuple[str, ...], selection: Selection) -> Network:
     _require_species(matrix, order)
     keep = _independent_columns(matrix)
     reagent_matrix = np.array([[term.counts.get(name, 0) for name in order] for term in made], dtype=np.int64)
-    shape = Stoichiometry(matrix[:, keep], len(aqueous), len(pinned),
-                          reagent_matrix.reshape(len(made), len(order))[:, keep])
+    shape = Stoichiometry(
+        matrix[:, keep], len(aqueous), len(pinned), reagent_matrix.reshape(len(made), len(order))[:, keep]
+    )
     return Network(
         tuple(species for species, _ in aqueous),
         tuple(species for species, _ in phases),
@@ -187,8 +188,10 @@ def _held(species: Species, merged: frozenset[str], present: set[str]) -> bool:
 def _require_species(matrix: Integers, order: list[str]) -> None:
     for column, name in enumerate(order):
         if name not in (PROTON, ELECTRON) and not matrix[:, column].any():
-            raise DataError(f"The tables hold no dissolved species of {name}.",
-                            hint="Leave that substance out, or bring in a table of species that has it.")
+            raise DataError(
+                f"The tables hold no dissolved species of {name}.",
+                hint="Leave that substance out, or bring in a table of species that has it.",
+            )
 
 
 def _independent_columns(matrix: Integers) -> list[int]:

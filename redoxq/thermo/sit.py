@@ -41,8 +41,10 @@ class SpecificInteraction:
     """
 
     name = "specific ion interaction (SIT)"
-    reach = ("activities by specific ion interaction hold within a few per cent to 3.5 mol/kg ionic strength "
-             "and are estimates beyond")
+    reach = (
+        "activities by specific ion interaction hold within a few per cent to 3.5 mol/kg ionic strength "
+        "and are estimates beyond"
+    )
 
     def __init__(self, species: Sequence[Species]) -> None:
         self.charge = np.array([one.formula.charge for one in species], dtype=float)

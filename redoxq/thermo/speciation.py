@@ -120,8 +120,9 @@ def speciate(recipe: Recipe) -> Liquor:
     model = activity.choose(web.aqueous)
     state = equilibrium(web, amounts, temperature, model, pinned)
     certificate.require(state, amounts, pinned)
-    return Liquor(reagents, amounts, temperature, state, oxygen_pressure(recipe.air, temperature),
-                  composition, model, pinned)
+    return Liquor(
+        reagents, amounts, temperature, state, oxygen_pressure(recipe.air, temperature), composition, model, pinned
+    )
 
 
 def dissolved_oxygen(liquor: Liquor) -> Array:
@@ -146,5 +147,3 @@ def standard_value(liquor: Liquor, species: tuple[Species, ...]) -> Array:
     count = np.array([terms(one.formula, one.components, frozenset()).water for one in species])
     values: Array = energies - count * water_value(liquor)[:, None]
     return values
-
-

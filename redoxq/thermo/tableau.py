@@ -56,9 +56,10 @@ class Stoichiometry:
 
     def __init__(self, matrix: Integers, aqueous: int, pinned: int, reagents: Integers) -> None:
         self.matrix = matrix
-        self.species, self.components = matrix.shape
+        self.species: int = matrix.shape[0]
+        self.components: int = matrix.shape[1]
         self.aqueous = aqueous
-        self.phases = self.species - aqueous - pinned
+        self.phases: int = self.species - aqueous - pinned
         self.pinned = pinned
         self.reagents = reagents
         unit = np.eye(self.components, dtype=np.int64)
@@ -67,12 +68,14 @@ class Stoichiometry:
 
     @property
     def first_pinned(self) -> int:
+        """Row number of the first pinned species."""
         return self.aqueous + self.phases
 
     def fixed(self, basis: Basis) -> NDArray[np.bool_]:
         """Tell which members of a basis have a fixed activity (pure phases and pinned species)."""
         members = np.asarray(basis)
-        return (members >= self.aqueous) & (members < self.species)
+        fixed: NDArray[np.bool_] = (members >= self.aqueous) & (members < self.species)
+        return fixed
 
     def tableau(self, basis: Basis) -> Tableau:
         """Return the tableau of a basis (species numbers in slot order)."""
@@ -132,8 +135,9 @@ def linear_start(shape: Stoichiometry, g: Array, amounts: Array) -> tuple[list[B
     for _ in range(40 * shape.components + 40):
         if not len(todo):
             break
-        moved = [_pivot(shape, tableau, members, cost, amounts, bases) for tableau, members in
-                 shape.groups(bases, todo)]
+        moved = [
+            _pivot(shape, tableau, members, cost, amounts, bases) for tableau, members in shape.groups(bases, todo)
+        ]
         todo = np.concatenate(moved) if moved else todo[:0]
     return bases, _drive_out_components(shape, bases, cost, amounts)
 
@@ -154,10 +158,12 @@ def _signed_bases(shape: Stoichiometry, start: Basis, amounts: Array) -> list[Ba
     totals = amounts @ shape.tableau(start).reagents
     bases = []
     for row in totals:
-        bases.append(tuple(
-            member + shape.components if member >= shape.species and total < 0 else member
-            for member, total in zip(start, row, strict=True)
-        ))
+        bases.append(
+            tuple(
+                member + shape.components if member >= shape.species and total < 0 else member
+                for member, total in zip(start, row, strict=True)
+            )
+        )
     return bases
 
 
@@ -195,12 +201,11 @@ def _pivot(
         basis = list(tableau.basis)
         basis[int(leaving[k])] = int(entering[k])
         bases[rows[k]] = tuple(basis)
-    return rows[moves]
+    moved: Integers = rows[moves]
+    return moved
 
 
-def _drive_out_components(
-    shape: Stoichiometry, bases: list[Basis], cost: Array, amounts: Array
-) -> NDArray[np.bool_]:
+def _drive_out_components(shape: Stoichiometry, bases: list[Basis], cost: Array, amounts: Array) -> NDArray[np.bool_]:
     """Replace bare components that are left at zero by species; rows where one is not zero are infeasible."""
     feasible = np.ones(len(bases), dtype=bool)
     for row, basis in enumerate(bases):
