@@ -26,8 +26,11 @@ ASSUMED_FREE_METAL = 0.1
 EXCESS = 1.0
 """mol/kg of metal left over when the amount is not given."""
 
-STEPS = 24
+STEPS = 12
 ROUNDS = 4
+
+LEAST_EXTENT = 1e-6
+"""Share of the gas at which the search begins: with none taken off there is no couple to solve for."""
 
 Stops = Callable[[Oxidant, Array], NDArray[np.bool_]]
 """Given an oxidant and pH values: True where practice no longer lets it act."""
@@ -185,7 +188,7 @@ def _gas_formed(rest: _Rest, state: Equilibrium, oxidant: Oxidant) -> float:
 
 def _extent_at(rest: _Rest, stop: float, most: float) -> tuple[float, Equilibrium]:
     """Amount of gas at which the pH reaches the stop, by a repeated grid."""
-    low, high = 0.0, most
+    low, high = LEAST_EXTENT * most, most
     for _ in range(ROUNDS):
         grid = np.linspace(low, high, STEPS)
         state = rest.solve(grid)

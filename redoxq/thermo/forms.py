@@ -148,7 +148,7 @@ def _atoms(species: Species, element: str) -> int:
 
 def _candidates(liquor: Liquor, element: str) -> tuple[Species, ...]:
     """Species of the element whose other components the liquor holds."""
-    held = {name for name in liquor.network.components}
+    held = set(liquor.network.components)
     elements = {symbol for species in liquor.network.species for symbol, _ in species.formula.atoms}
     return tuple(
         species

@@ -16,7 +16,7 @@ ARTIFICIAL_COST = 1e5
 """Cost (units of RT) of a bare component in the linear programme, far above that of any species."""
 
 AQUEOUS_FAVOUR = 5.0
-"""Aqueous species are taken at exp(-5) mol/kg rather than 1 mol/kg when the linear programme compares them with solids."""
+"""Aqueous species are taken at exp(-5) mol/kg, not 1 mol/kg, when the linear programme compares them with solids."""
 
 PERTURBATION = 1e-11
 """Relative shift of the totals that keeps the linear programme from stalling on ties."""
