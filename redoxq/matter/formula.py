@@ -6,28 +6,20 @@ import re
 from collections.abc import Iterable
 from dataclasses import dataclass
 from functools import cache, lru_cache
-from importlib.resources import files
 from typing import Any
 
 from lark import Lark, Token, Tree, UnexpectedInput
 
 from redoxq.errors import FormulaError, Place
 from redoxq.matter.elements import elements, nearest_symbol
+from redoxq.parsers import parser
+from redoxq.matter.notation import bare_sign, charge_last
 
 LONGEST = 120
 MOST_ATOMS = 9999
+MOST_CHARGE = 30
 
-_PLAIN = str.maketrans("₀₁₂₃₄₅₆₇₈₉₊₋−–·•*", "0123456789+---...")
-_RAISED = str.maketrans("⁰¹²³⁴⁵⁶⁷⁸⁹⁺⁻", "0123456789+-")
-
-_PHASE = re.compile(r"\((?:s|l|g|aq)(?:,\s*[\w ]+)?\)$")
-_MARKED = re.compile(r"(.*?)(?:\^\{?|\()(\d{0,3})([+-])(\d{0,3})[})]?$")
-_SIGNED = re.compile(r"(.*?)([+-])(\d{1,3})$")
-_REPEATED = re.compile(r"(.*?[^+-])(\++|-+)$")
-_ELEMENT = re.compile(r"[A-Z][a-z]?$")
-
-CHAINS = frozenset({"I3", "Br3", "Cl3", "N3", "O2", "O3", "S2O8"})
-"""Ions written `I3-`: here the digit counts atoms, elsewhere (`S2-`, `Cu2+`) it is the charge."""
+_STATE = re.compile(r"\((?:I{1,3}|IV|VI{0,3})\)")
 
 
 @dataclass(frozen=True, slots=True)
@@ -67,7 +59,7 @@ class Formula:
 
 @cache
 def _grammar() -> Lark:
-    return Lark((files("redoxq.grammar") / "formula.lark").read_text("utf-8"), parser="lalr", maybe_placeholders=False)
+    return parser("formula")
 
 
 @lru_cache(maxsize=16384)
@@ -89,47 +81,22 @@ def parse_formula(text: str) -> Formula:
     """
     if len(text) > LONGEST:
         raise FormulaError(f"A formula of more than {LONGEST} characters is not read.", Place(0, len(text)))
-    plain = _charge_last(text)
+    if state := _STATE.search(text):
+        at = Place(*state.span())
+        raise FormulaError(
+            "A Roman numeral belongs to a name, not to a formula.", at, "Write Cu+2, or copper(II) sulfate."
+        )
+    plain = charge_last(text)
     try:
-        tree = _grammar().parse(plain)
+        return _built(_grammar().parse(plain))
     except UnexpectedInput as error:
         start = error.pos_in_stream if isinstance(error.pos_in_stream, int) and error.pos_in_stream >= 0 else len(text)
-        start = min(start, max(len(text) - 1, 0))
+        start = min(start + len(text) - len(text.lstrip()), max(len(text) - 1, 0))
         raise FormulaError(
             f'"{text}" is not a formula that I can read.',
             Place(start, start + 1),
             "Write it like CuSO4, Cu+2, SO4-2, K4[Fe(CN)6], CuSO4.5H2O or AgCl(s).",
         ) from None
-    return _built(tree)
-
-
-def _charge_last(text: str) -> str:
-    """Bring every way of writing a charge to a sign and a number at the end, before the phase."""
-    raised = re.sub(r"[⁰¹²³⁴⁵⁶⁷⁸⁹]*[⁺⁻]+[⁰¹²³⁴⁵⁶⁷⁸⁹]*", lambda found: "^" + found[0].translate(_RAISED), text.strip())
-    plain = raised.translate(_PLAIN).translate(_RAISED)
-    phase = _PHASE.search(plain)
-    end = phase[0] if phase else ""
-    body = plain[: len(plain) - len(end)]
-    if body == "e-" or (not body.endswith(("+", "-", ")", "}")) and not _SIGNED.match(body)):
-        return plain
-    if marked := _MARKED.match(body):
-        return f"{marked[1]}{marked[3]}{marked[2] or marked[4]}{end}"
-    if _SIGNED.match(body) and not body.endswith(("+", "-")):
-        return plain
-    if repeated := _REPEATED.match(body):
-        return _bare_sign(repeated[1], repeated[2]) + end
-    return plain
-
-
-def _bare_sign(body: str, signs: str) -> str:
-    """`Cu2+` is Cu+2, `SO42-` is SO4-2, `I3-` and `NH4+` carry one charge."""
-    if len(signs) > 1:
-        return f"{body}{signs[0]}{len(signs)}"
-    core = body.rstrip("0123456789")
-    digits = body[len(core) :]
-    if not digits or (len(digits) == 1 and not _ELEMENT.match(core)) or body in CHAINS:
-        return body + signs
-    return f"{core}{digits[:-1]}{signs}{digits[-1]}"
 
 
 def _built(tree: Tree[Any]) -> Formula:
@@ -138,41 +105,74 @@ def _built(tree: Tree[Any]) -> Formula:
         return Formula("e-", (), -1)
     charge, phase, form = 0, None, None
     for node in tree.children[1:]:
-        token = "".join(map(str, node.children))
         if node.data == "charge":
-            charge = int(token + "1" if token in "+-" else token[:4])
+            charge = _charge(node.children)
         else:
-            phase, _, word = token.strip("()").partition(",")
+            phase, _, word = str(node.children[0]).strip("()").partition(",")
             form = word.strip() or None
     atoms: dict[str, int] = {}
     water = 0
-    parts = []
+    parts: list[str] = []
     for node in first.find_data("part"):
-        count, units = _part(node)
+        count, units = _part(node, alone=len(first.children) == 1)
         found = _atoms(units, count, {})
         if node is not first.children[0] and found == {"H": 2 * count, "O": count}:
             water += count
         for symbol, number in found.items():
             atoms[symbol] = atoms.get(symbol, 0) + number
-        parts.append((str(count) if count > 1 else "") + "".join(map(_text, units)))
-    if any(not 0 < number <= MOST_ATOMS for number in atoms.values()):
-        raise FormulaError("A count in the formula is zero or too large.", Place(0, 1))
-    return Formula(".".join(parts) + _charge_text(charge), tuple(atoms.items()), charge, phase, form, water)
+        parts.append(_part_text(count, units, leads=not parts))
+    if any(number > MOST_ATOMS for number in atoms.values()):
+        raise FormulaError(f"A formula of more than {MOST_ATOMS} atoms of an element is not read.")
+    text = ".".join(parts)
+    return Formula(text + _charge_text(text, charge), tuple(atoms.items()), charge, phase, form, water)
 
 
-def _part(node: Tree[Any]) -> tuple[int, list[Any]]:
+def _charge(tokens: list[Any]) -> int:
+    size = _number(tokens[1]) if len(tokens) > 1 else 1
+    if size > MOST_CHARGE:
+        raise FormulaError(f"No ion carries a charge of {size}.", _place(tokens[1]))
+    return -size if tokens[0] == "-" else size
+
+
+def _number(token: Token) -> int:
+    """A count as a number from 1 up."""
+    text = str(token)
+    if len(text) > len(str(MOST_ATOMS)) or not int(text):
+        raise FormulaError(f"A count of {text[:12]} is not possible.", _place(token), f"Use 1 to {MOST_ATOMS}.")
+    return int(text)
+
+
+def _place(token: Token) -> Place:
+    return Place(token.start_pos or 0, token.end_pos or 1)
+
+
+def _part(node: Tree[Any], alone: bool) -> tuple[int, list[Any]]:
+    """Coefficient and units of what stands between the dots of a formula."""
     children = list(node.children)
-    if isinstance(children[0], Token):
-        return int(str(children[0])[:6]), children[1:]
-    return 1, children
+    if not isinstance(children[0], Token):
+        return 1, children
+    if alone:
+        hint = "A number of molecules belongs into a reaction: 2 Ag+ + Cu = Cu+2 + 2 Ag."
+        raise FormulaError("A formula does not begin with a number.", _place(children[0]), hint)
+    return _number(children[0]), children[1:]
+
+
+def _part_text(count: int, units: list[Any], leads: bool) -> str:
+    """Text of a part: crystal water as `5H2O`, a coefficient of the first part as `(CaSO4)2`."""
+    text = "".join(map(_text, units))
+    if count == 1:
+        return text
+    return f"({text}){count}" if leads else f"{count}{text}"
 
 
 def _unit(node: Tree[Any]) -> tuple[list[Any], int]:
     """What a unit holds and how often."""
     children = list(node.children)
     count = 1
-    if isinstance(children[-1], Token) and children[-1].type == "COUNT":
-        count = int(str(children.pop())[:6])
+    last = children[-1]
+    if isinstance(last, Token) and last.type == "COUNT":
+        count = _number(last)
+        children.pop()
     return children, count
 
 
@@ -182,8 +182,7 @@ def _atoms(units: Iterable[Any], factor: int, into: dict[str, int]) -> dict[str,
         if isinstance(inner[0], Token):
             symbol = str(inner[0])
             if symbol not in elements():
-                at = Place(inner[0].start_pos or 0, inner[0].end_pos or 1)
-                raise FormulaError(f'There is no element "{symbol}".', at, nearest_symbol(symbol))
+                raise FormulaError(f'There is no element "{symbol}".', _place(inner[0]), nearest_symbol(symbol))
             into[symbol] = into.get(symbol, 0) + factor * count
         else:
             _atoms(inner, factor * count, into)
@@ -192,18 +191,20 @@ def _atoms(units: Iterable[Any], factor: int, into: dict[str, int]) -> dict[str,
 
 def _text(unit: Tree[Any]) -> str:
     inner, count = _unit(unit)
-    number = str(count) if count != 1 else ""
     if isinstance(inner[0], Token):
-        return str(inner[0]) + number
+        return str(inner[0]) + (str(count) if count > 1 else "")
     body = "".join(map(_text, inner))
-    return f"({body}){number}" if number or len(inner) > 1 else body
+    return f"({body}){count}" if count > 1 else body
 
 
-def _charge_text(charge: int) -> str:
+def _charge_text(body: str, charge: int) -> str:
+    """The charge as it stands in canonical text; `+1` is spelled where a bare sign would be read otherwise."""
     if not charge:
         return ""
     sign = "+" if charge > 0 else "-"
-    return sign if abs(charge) == 1 else f"{sign}{abs(charge)}"
+    if abs(charge) > 1 or bare_sign(body, sign) != body + sign:
+        return f"{sign}{abs(charge)}"
+    return sign
 
 
 def molar_mass(formula: Formula) -> float:
