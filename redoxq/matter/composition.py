@@ -7,13 +7,13 @@ Hydrogen ions and oxide oxygen are none: they come and go with water.
 from __future__ import annotations
 
 import re
-from collections.abc import Mapping
+from collections.abc import Iterable, Mapping
 from dataclasses import dataclass
 from functools import cache, lru_cache
-from math import floor
 
 from redoxq.errors import DataError
 from redoxq.matter.formula import Formula, parse_formula
+from redoxq.matter.states import states_of
 from redoxq.matter.tables import read_table
 
 _NUMERALS = {0: "0", 1: "I", 2: "II", 3: "III", 4: "IV", 5: "V", 6: "VI", 7: "VII", 8: "VIII", 9: "IX"}
@@ -63,7 +63,7 @@ def component_charge(component: str) -> int:
     _, state = split_component(component)
     if state is not None:
         return state
-    return next(group.charge for group in groups() if (component, 1) in group.components)
+    return next(group.charge for group in groups() if group.text == component)
 
 
 @cache
@@ -77,12 +77,6 @@ def groups() -> tuple[Group, ...]:
         pattern = re.compile(re.escape(row["group"]) + r"(?![a-z0-9])")
         found.append(Group(row["group"], components, int(row["charge"]), row["kind"], row["name"], pattern))
     return tuple(sorted(found, key=lambda group: -len(group.text)))
-
-
-@cache
-def usual_states() -> Mapping[str, int]:
-    """State of an element where a formula leaves it open."""
-    return {row["element"]: int(row["state"]) for row in read_table("states.csv")}
 
 
 def components(formula: Formula, states: str | None = None) -> Mapping[str, int]:
@@ -115,15 +109,28 @@ def _stated(states: str) -> Mapping[str, int]:
 
 @lru_cache(maxsize=16384)
 def _components(formula: Formula) -> Mapping[str, int]:
-    text = formula.text.split("+")[0].split("-")[0] if formula.charge else formula.text
+    if not formula.atoms:
+        return {}
+    for group in groups():
+        if group.kind == "sole" and group.text == formula.bare and group.charge == formula.charge:
+            return _visible(group.components)
+    for kinds in (("group", "whole"), ("whole",)):
+        found = _divided(formula, kinds)
+        if found is not None:
+            return _visible(found.items())
+    raise DataError(f"The oxidation states in {formula.text} cannot be told.", hint="Fill the column `states`.")
+
+
+def _visible(counts: Iterable[tuple[str, int]]) -> Mapping[str, int]:
+    return {name: number for name, number in counts if name not in SILENT and number}
+
+
+def _divided(formula: Formula, kinds: tuple[str, ...]) -> dict[str, int] | None:
+    """Components when groups of some kinds are taken whole; None where the rest then makes no sense."""
     found: dict[str, int] = {}
+    text, rest, charge = formula.bare, dict(formula.atoms), formula.charge
     for group in groups():
-        if group.kind == "sole" and group.text == text:
-            return {name: number for name, number in group.components if name not in SILENT}
-    rest = dict(formula.atoms)
-    charge = formula.charge
-    for group in groups():
-        if group.kind == "sole":
+        if group.kind not in kinds:
             continue
         times, text = _taken(text, group)
         if times:
@@ -133,10 +140,14 @@ def _components(formula: Formula) -> Mapping[str, int]:
             for name, number in group.components:
                 found[name] = found.get(name, 0) + number * times
     if any(number < 0 for number in rest.values()):
-        raise DataError(f"The groups in {formula.text} overlap.", hint="Fill the column `states`.")
-    for name, number in _lone(formula, {s: n for s, n in rest.items() if n}, charge).items():
+        return None
+    states = states_of({symbol: number for symbol, number in rest.items() if number}, charge)
+    if states is None:
+        return None
+    for (symbol, state), number in states.items():
+        name = component_name(symbol, state)
         found[name] = found.get(name, 0) + number
-    return {name: number for name, number in found.items() if name not in SILENT}
+    return found
 
 
 def _taken(text: str, group: Group) -> tuple[int, str]:
@@ -165,58 +176,3 @@ def _multiplicity(text: str, start: int, end: int) -> int:
     part = text.rfind(".", 0, start)
     lead = re.match(r"\d*", text[part + 1 :])
     return factor * (int(lead[0]) if lead and lead[0] else 1)
-
-
-def _lone(formula: Formula, atoms: dict[str, int], charge: int) -> dict[str, int]:
-    """States of atoms outside groups: hydrogen +1 and oxide -2, one element by the charge, others as usual."""
-    if set(atoms) == {"H"} and not charge and atoms["H"] == 2:
-        return {"H(0)": 2}
-    if len(atoms) == 1:
-        ((symbol, number),) = atoms.items()
-        return _shared(formula, symbol, number, charge)
-    remaining = charge - atoms.get("H", 0) + 2 * atoms.get("O", 0)
-    others = [symbol for symbol in atoms if symbol not in ("H", "O")]
-    if not others:
-        if remaining:
-            raise DataError(f"The states in {formula.text} cannot be told.", hint="Fill the column `states`.")
-        return {}
-    open_one = _open_element(others)
-    found: dict[str, int] = {}
-    for symbol in others:
-        if symbol != open_one:
-            state = _usual(formula, symbol)
-            found[component_name(symbol, state)] = atoms[symbol]
-            remaining -= state * atoms[symbol]
-    return {**found, **_shared(formula, open_one, atoms[open_one], remaining)}
-
-
-def _open_element(symbols: list[str]) -> str:
-    """The one whose state follows from the rest: what has no usual state, else what varies most."""
-    unknown = [symbol for symbol in symbols if symbol not in usual_states()]
-    if unknown:
-        return unknown[0]
-    ranked = sorted(symbols, key=lambda symbol: _FIXED.get(symbol, 0))
-    return ranked[0]
-
-
-_FIXED = dict.fromkeys(("Li", "Na", "K", "Rb", "Cs", "Mg", "Ca", "Sr", "Ba", "Al", "F", "Zn", "Cd", "Ag"), 2)
-_FIXED |= dict.fromkeys(("Cl", "Br", "I", "S", "Se", "Te", "N", "P", "As", "C", "B", "Si"), 1)
-
-
-def _usual(formula: Formula, symbol: str) -> int:
-    state = usual_states().get(symbol)
-    if state is None:
-        raise DataError(f"The state of {symbol} in {formula.text} cannot be told.", hint="Fill the column `states`.")
-    return state
-
-
-def _shared(formula: Formula, symbol: str, number: int, total: int) -> dict[str, int]:
-    """Split a total over the atoms of one element; a fraction goes to the two neighbouring states."""
-    low = floor(total / number)
-    above = total - low * number
-    if not -9 < low < 9:
-        raise DataError(f"The states in {formula.text} cannot be told.", hint="Fill the column `states`.")
-    shares = {component_name(symbol, low): number - above}
-    if above:
-        shares[component_name(symbol, low + 1)] = above
-    return {name: count for name, count in shares.items() if count}

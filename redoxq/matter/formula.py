@@ -12,8 +12,8 @@ from lark import Lark, Token, Tree, UnexpectedInput
 
 from redoxq.errors import FormulaError, Place
 from redoxq.matter.elements import elements, nearest_symbol
-from redoxq.parsers import parser
 from redoxq.matter.notation import bare_sign, charge_last
+from redoxq.parsers import parser
 
 LONGEST = 120
 MOST_ATOMS = 9999
@@ -51,6 +51,11 @@ class Formula:
     @property
     def elements(self) -> frozenset[str]:
         return frozenset(symbol for symbol, _ in self.atoms)
+
+    @property
+    def bare(self) -> str:
+        """The text without the charge."""
+        return re.sub(r"[+-]\d*$", "", self.text)
 
     def count(self, symbol: str) -> int:
         """Number of atoms of an element."""
