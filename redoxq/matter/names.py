@@ -67,16 +67,21 @@ class Substance:
 class Ion:
     """An ion of the table of ions; `usual` where a name without a state means it."""
 
-    formula: Formula
+    text: str
     names: tuple[str, ...]
     usual: bool
+
+    @property
+    def formula(self) -> Formula:
+        """The formula, read when it is asked for."""
+        return parse_formula(self.text)
 
 
 @cache
 def ions() -> tuple[Ion, ...]:
     """The table of ions."""
     return tuple(
-        Ion(parse_formula(row["formula"]), tuple(row["names"].split("|")), row["usual"] == "1")
+        Ion(row["formula"], tuple(row["names"].split("|")), row["usual"] == "1")
         for row in read_table("ions.csv")
     )
 

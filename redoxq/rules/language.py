@@ -6,13 +6,13 @@ import re
 from collections.abc import Iterable
 from dataclasses import dataclass
 from functools import cache
-from importlib.resources import files
 from itertools import pairwise
 from typing import Any, Final
 
 from lark import Lark, UnexpectedInput
 
 from redoxq.errors import RuleError
+from redoxq.parsers import parser
 from redoxq.rules.conditions import MOST_ALTERNATIVES, facts_named
 from redoxq.rules.reader import Mistake, Reader
 from redoxq.rules.rule import Effect, Rule
@@ -132,5 +132,4 @@ def _unexpected(error: UnexpectedInput, block: Block) -> RuleError:
 
 @cache
 def _parser() -> Lark:
-    grammar = files("redoxq.grammar").joinpath("rule.lark").read_text(encoding="utf-8")
-    return Lark(grammar, parser="lalr", start="rule", transformer=Reader(), propagate_positions=False)
+    return parser("rule", Reader())

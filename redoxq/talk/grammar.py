@@ -4,13 +4,13 @@ from __future__ import annotations
 
 from collections.abc import Callable, Collection, Iterable
 from functools import cache
-from importlib.resources import files
 
 from lark import Lark
 from lark.exceptions import UnexpectedInput, UnexpectedToken
 from lark.lexer import PatternStr
 
 from redoxq.errors import RedoxqError
+from redoxq.parsers import parser
 from redoxq.talk.reader import Reader
 
 END = "$END"
@@ -51,8 +51,7 @@ _ORDER = (
 @cache
 def sentence_grammar() -> Lark:
     """Return the parser of grammar/sentence.lark, built when first asked for."""
-    text = files("redoxq.grammar").joinpath("sentence.lark").read_text(encoding="utf-8")
-    return Lark(text, parser="lalr", lexer="contextual", transformer=Reader(), maybe_placeholders=False)
+    return parser("sentence", Reader())
 
 
 @cache
