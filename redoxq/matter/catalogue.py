@@ -2,15 +2,14 @@
 
 from __future__ import annotations
 
-import difflib
-import re
 from collections.abc import Mapping
 from dataclasses import dataclass
 from functools import cache, cached_property
 
 from redoxq.errors import DataError, UnknownNameError
 from redoxq.matter.composition import components
-from redoxq.matter.formula import Formula, parse_formula
+from redoxq.matter.formula import SYMBOL, Formula, parse_formula
+from redoxq.matter.nearest import nearest_of
 from redoxq.matter.tables import Row, number_in, read_table, table_names
 
 COLUMNS = (
@@ -31,8 +30,6 @@ COLUMNS = (
     "states",
 )
 PHASES = ("aq", "s", "l", "g")
-
-_SYMBOL = re.compile(r"[A-Z][a-z]?")
 
 
 @dataclass(frozen=True, eq=False)
@@ -87,7 +84,7 @@ class Species:
     @cached_property
     def symbols(self) -> frozenset[str]:
         """Elements, told from the letters alone."""
-        return frozenset(_SYMBOL.findall(self.text))
+        return frozenset(SYMBOL.findall(self.text))
 
     @cached_property
     def formula(self) -> Formula:
@@ -123,7 +120,7 @@ class Catalogue:
         """
         found = self.find(key)
         if found is None:
-            near = difflib.get_close_matches(key, self._by_key, 3)
+            near = nearest_of(key, self._by_key, 3, 0.6)
             raise UnknownNameError(
                 f'The tables hold no species "{key}".', hint=f"Nearest: {', '.join(near)}." if near else None
             )
@@ -135,7 +132,14 @@ class Catalogue:
 
     def all_of(self, text: str) -> tuple[Species, ...]:
         """All rows of one formula, whatever the phase."""
-        return tuple(one for one in self.species if one.text == text)
+        return self._by_text.get(text, ())
+
+    @cached_property
+    def _by_text(self) -> Mapping[str, tuple[Species, ...]]:
+        found: dict[str, tuple[Species, ...]] = {}
+        for one in self.species:
+            found[one.text] = (*found.get(one.text, ()), one)
+        return found
 
     def of_elements(self, symbols: frozenset[str]) -> tuple[Species, ...]:
         """All species made of no other elements than these."""
@@ -166,7 +170,7 @@ class Catalogue:
         return {
             one.text: one
             for one in self.species
-            if one.phase in ("s", "l") and _SYMBOL.fullmatch(one.text) and one.G == 0.0 and one.text not in NOT_METALS
+            if one.phase in ("s", "l") and SYMBOL.fullmatch(one.text) and one.G == 0.0 and one.text not in NOT_METALS
         }
 
 

@@ -19,7 +19,10 @@ LONGEST = 120
 MOST_ATOMS = 9999
 MOST_CHARGE = 30
 
-_STATE = re.compile(r"\((?:I{1,3}|IV|VI{0,3})\)")
+SYMBOL = re.compile(r"[A-Z][a-z]?")
+"""An element in a formula."""
+
+_STATE = re.compile(r"\((?:I{1,3}|IV|VI{0,3})\)|II+")
 
 
 @dataclass(frozen=True, slots=True)

@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import difflib
 import re
 from collections.abc import Iterable, Mapping
 from dataclasses import dataclass
@@ -12,34 +11,20 @@ from redoxq.errors import DataError, FormulaError, Place, UnknownNameError
 from redoxq.matter.catalogue import catalogue
 from redoxq.matter.composition import components
 from redoxq.matter.elements import elements
-from redoxq.matter.formula import Formula, parse_formula
+from redoxq.matter.formula import LONGEST, Formula, parse_formula
+from redoxq.matter.ions import Ion, compound_named, ion_named, ions, plain_name, salt_text
+from redoxq.matter.kinds import kind_of, meant_by
+from redoxq.matter.nearest import nearest_of
+from redoxq.matter.synonyms import usual_form
 from redoxq.matter.tables import read_table
 
-_HYDRATES = {
-    "monohydrate": 1,
-    "dihydrate": 2,
-    "trihydrate": 3,
-    "tetrahydrate": 4,
-    "pentahydrate": 5,
-    "hexahydrate": 6,
-    "heptahydrate": 7,
-    "octahydrate": 8,
-    "nonahydrate": 9,
-    "decahydrate": 10,
-    "dodecahydrate": 12,
-    "octadecahydrate": 18,
-}
-_OLD_ELEMENTS = {
-    "aluminum": "Al",
-    "cesium": "Cs",
-    "sulphur": "S",
-    "wolfram": "W",
-    "quicksilver": "Hg",
-    "columbium": "Nb",
-}
-_ACIDS = frozenset({"HCl", "HBr", "HI", "HF", "H2SO4", "HNO3", "H3PO4", "HClO4", "HClO3", "HCN"})
-_BASES = frozenset({"NaOH", "KOH", "LiOH", "NH3", "Ca(OH)2", "Ba(OH)2"})
-_WORD_FORM = re.compile(r"[A-Za-z][a-z']*(\([ivIV]+\))?([ -][A-Za-z'()]+)*$")
+__all__ = ["Ion", "Substance", "ions", "known_names", "metal", "nearest", "salt_text", "substance"]
+
+_OLD_ELEMENTS = {"wolfram": "W", "quicksilver": "Hg", "columbium": "Nb"}
+_WORDS = re.compile(r"[A-Za-z][a-z']*(\([ivIV]+\))?([ -][A-Za-z'()]+)*$")
+_ION_WORD = re.compile(r"\s*\b(?:ions?|cations?|anions?)$")
+_STATE = re.compile(r"\([iv]+\)")
+_SHORT = re.compile(r"^conc(?:entrated|\.)?\s+", re.IGNORECASE)
 
 
 @dataclass(frozen=True, slots=True)
@@ -63,44 +48,16 @@ class Substance:
     strength: float | None = None
 
 
-@dataclass(frozen=True, slots=True)
-class Ion:
-    """An ion of the table of ions; `usual` where a name without a state means it."""
-
-    text: str
-    names: tuple[str, ...]
-    usual: bool
-
-    @property
-    def formula(self) -> Formula:
-        """The formula, read when it is asked for."""
-        return parse_formula(self.text)
-
-
-@cache
-def ions() -> tuple[Ion, ...]:
-    """The table of ions."""
-    return tuple(
-        Ion(row["formula"], tuple(row["names"].split("|")), row["usual"] == "1")
-        for row in read_table("ions.csv")
-    )
-
-
 @cache
 def _everyday() -> Mapping[str, Mapping[str, str]]:
-    return {row["name"].casefold(): row for row in read_table("names.csv")}
-
-
-@cache
-def _ions_by_name() -> Mapping[str, Ion]:
-    return {name.casefold(): ion for ion in reversed(ions()) for name in ion.names}
+    return {plain_name(row["name"]): row for row in reversed(read_table("names.csv"))}
 
 
 @cache
 def _metal_names() -> Mapping[str, str]:
-    """Names of the metals of the catalogue, and their symbols, to symbols."""
+    """Names of the metals of the catalogue to their symbols."""
     table = elements()
-    named = {table[symbol].name.casefold(): symbol for symbol in catalogue().metals}
+    named = {plain_name(table[symbol].name): symbol for symbol in catalogue().metals}
     return {**named, **{name: s for name, s in _OLD_ELEMENTS.items() if s in catalogue().metals}}
 
 
@@ -115,11 +72,13 @@ def metal(text: str) -> str:
     spoken = " ".join(text.split())
     if spoken in catalogue().metals:
         return spoken
-    found = _metal_names().get(spoken.casefold())
+    folded = plain_name(spoken)
+    found = _metal_names().get(folded)
     if found:
         return found
-    near = difflib.get_close_matches(spoken.casefold(), _metal_names(), 3, 0.6)
-    raise UnknownNameError(f'I know no metal called "{spoken}".', hint=_hint(near))
+    near = nearest_of(folded, _metal_names(), 3, 0.6)
+    near += [symbol for symbol in catalogue().metals if symbol.casefold() == folded]
+    raise UnknownNameError(f'I know no metal called "{spoken[:60]}".', hint=_hint(near))
 
 
 @lru_cache(maxsize=4096)
@@ -134,103 +93,67 @@ def substance(text: str) -> Substance:
         For what is plainly a formula but cannot be read.
     """
     spoken = " ".join(text.split())
-    found = _named(spoken)
-    if found is not None:
-        return found
-    if len(spoken) <= 120 and _looks_like_formula(spoken):
-        return _from_formula(spoken)
+    if len(spoken) <= LONGEST:
+        found = _named(spoken)
+        if found is not None:
+            return found
+        if _looks_like_formula(spoken):
+            return _from_formula(spoken)
     raise UnknownNameError(f'I know no substance called "{spoken[:60]}".', Place(0, len(text)), _hint(nearest(spoken)))
 
 
 def _named(spoken: str) -> Substance | None:
-    folded = spoken.casefold()
+    folded = _SHORT.sub("concentrated ", plain_name(spoken))
     row = _everyday().get(folded)
-    if row is not None:
+    # A name that is a formula counts only as it is written: `hf` is not `HF`.
+    if row is not None and (row["name"] == spoken or not _is_formula_name(row["name"])):
         strength = float(row["strength_wt"]) if row["strength_wt"] else None
         return Substance(parse_formula(row["formula"]), row["name"], row["kind"], strength)
     symbol = _metal_names().get(folded)
     if symbol:
         return Substance(parse_formula(symbol), folded, "metal")
-    words = folded.split()
-    for cut in range(1, len(words)):
-        compound = _compound(" ".join(words[:cut]), words[cut:])
-        if compound is not None:
-            return Substance(compound, spoken, "base" if compound.text in _BASES else "salt")
-    return _ion_named(folded)
+    compound = compound_named(folded)
+    if compound is not None:
+        return Substance(compound, spoken, kind_of(compound))
+    ion = ion_named(_ION_WORD.sub("", folded))
+    if ion is not None and (folded not in _element_names()):
+        return Substance(ion.formula, spoken, "ion")
+    return None
 
 
-def _ion_named(folded: str) -> Substance | None:
-    ion = _ions_by_name().get(re.sub(r"\s*\b(ions?|cations?|anions?)$", "", folded))
-    if ion is None or (
-        ion.formula.charge > 0
-        and folded in ion.names
-        and not folded.endswith(("ous", "ic", ")"))
-        and "ion" not in folded
-    ):
-        return None
-    return Substance(ion.formula, folded, "ion")
+def _is_formula_name(name: str) -> bool:
+    return any(character.isdigit() for character in name)
 
 
-def _compound(cation_name: str, rest: list[str]) -> Formula | None:
-    """A salt from the names of its ions, with crystal water where it is named."""
-    water = _HYDRATES.get(rest[-1])
-    anion_name = " ".join(rest[:-1] if water else rest)
-    cation, anion = _ions_by_name().get(cation_name), _ions_by_name().get(anion_name)
-    if cation is None or anion is None or cation.formula.charge <= 0 or anion.formula.charge >= 0:
-        return None
-    text = salt_text(cation.formula, anion.formula)
-    return parse_formula(f"{text}.{water if water > 1 else ''}H2O" if water else text)
-
-
-def salt_text(cation: Formula, anion: Formula) -> str:
-    """Formula of the neutral salt of two ions: `Fe2(SO4)3`, `(NH4)2SO4`."""
-    plus, minus = cation.charge, -anion.charge
-    divisor = next(k for k in (4, 3, 2, 1) if plus % k == 0 and minus % k == 0)
-    return _times(cation, minus // divisor) + _times(anion, plus // divisor)
-
-
-def _times(ion: Formula, count: int) -> str:
-    bare = re.sub(r"[+-]\d*$", "", ion.text)
-    if count == 1:
-        return bare
-    single = len(ion.atoms) == 1 and ion.atoms[0][1] == 1
-    return f"{bare}{count}" if single else f"({bare}){count}"
+@cache
+def _element_names() -> frozenset[str]:
+    return frozenset(plain_name(element.name) for element in elements().values())
 
 
 def _looks_like_formula(spoken: str) -> bool:
-    if not _WORD_FORM.match(spoken) or (spoken[0].isupper() and not spoken[1:].isalpha()):
+    if not _WORDS.match(spoken):
         return True
-    return (
-        spoken[0].isupper() and len(spoken) <= 12 and " " not in spoken and spoken not in (spoken.capitalize(),)
-    ) or spoken in elements()
+    return spoken in elements() or (" " not in spoken and spoken[0].isupper() and not spoken[1:].islower())
 
 
 def _from_formula(spoken: str) -> Substance:
     try:
-        formula = parse_formula(spoken)
+        formula = usual_form(parse_formula(spoken))
+        if meant := meant_by(formula):
+            raise UnknownNameError(f"{spoken} is no substance.", Place(0, len(spoken)), f"Nearest: {meant}.")
         components(formula)
     except FormulaError as error:
         near = [key for key in _formulas() if key.casefold() == spoken.casefold()][:3] or nearest(spoken)
-        if not any(character.isdigit() for character in spoken) or near:
+        if near or not any(character.isdigit() for character in spoken):
             raise UnknownNameError(f'I know no substance called "{spoken[:60]}".', error.at, _hint(near)) from None
         raise
-    except DataError as error:
-        raise UnknownNameError(f"I cannot tell what {spoken} is made of.", Place(0, len(spoken)), error.hint) from None
-    return Substance(formula, formula.text, _kind(formula))
-
-
-def _kind(formula: Formula) -> str:
-    text = formula.text
-    for row in _everyday().values():
-        if row["formula"] == text:
-            return row["kind"]
-    if formula.charge:
-        return "ion"
-    if text in catalogue().metals:
-        return "metal"
-    if text in _ACIDS or text in _BASES:
-        return "acid" if text in _ACIDS else "base"
-    return "gas" if len(formula.atoms) == 1 and formula.atoms[0][0] in ("H", "O", "N", "Cl", "F") else "salt"
+    except DataError:
+        raise UnknownNameError(
+            f"I cannot tell the oxidation states in {spoken}, so I cannot say what it does in water.",
+            Place(0, len(spoken)),
+            _hint(nearest(spoken)),
+        ) from None
+    return Substance(formula, formula.text, kind_of(formula))
 
 
 @cache
@@ -241,17 +164,39 @@ def _formulas() -> tuple[str, ...]:
 @lru_cache(maxsize=1024)
 def nearest(text: str, n: int = 3) -> list[str]:
     """Up to `n` known names or formulas near a text; none where nothing is near."""
-    folded = text.casefold()[:60]
+    folded = plain_name(text[:60])
     same = [formula for formula in _formulas() if formula.casefold() == folded]
-    close = difflib.get_close_matches(folded, _spelled(), n, 0.7)
-    return [*same, *close][:n]
+    begun = [name for name in _everyday() if len(folded) > 2 and name.startswith(folded)]
+    close = nearest_of(folded, [*_everyday(), *_metal_names(), *_near_salts(folded)], n, 0.75)
+    found = list(dict.fromkeys([*same, *begun[:1], *close, *begun]))[:n]
+    return [_STATE.sub(lambda state: state[0].upper(), name) for name in found]
+
+
+def _near_salts(folded: str) -> list[str]:
+    """Salts whose two names are both near those said."""
+    cations, anions = _ion_names()
+    words = folded.split()
+    found = []
+    for cut in range(1, min(len(words), 4)):
+        first, second = " ".join(words[:cut]), " ".join(words[cut:])
+        near = [first] if first in cations else nearest_of(first, cations, 2, 0.7)
+        found += [f"{cation} {anion}" for cation in near for anion in nearest_of(second, anions, 2, 0.7)]
+    return found
+
+
+@cache
+def _ion_names() -> tuple[tuple[str, ...], tuple[str, ...]]:
+    """All plain names of cations and of anions."""
+    cations = [plain_name(name) for ion in ions() if "+" in ion.text for name in ion.names]
+    anions = [plain_name(name) for ion in ions() if "+" not in ion.text for name in ion.names]
+    return tuple(dict.fromkeys(cations)), tuple(dict.fromkeys(anions))
 
 
 @cache
 def _spelled() -> tuple[str, ...]:
     usual = [ion for ion in ions() if ion.usual]
-    cations = [ion.names[-1] if "(" in ion.names[0] else ion.names[0] for ion in usual if ion.formula.charge > 0]
-    anions = [ion.names[0] for ion in usual if ion.formula.charge < 0]
+    cations = [ion.names[-1] if "(" in ion.names[0] else ion.names[0] for ion in usual if "+" in ion.text]
+    anions = [ion.names[0] for ion in usual if "+" not in ion.text]
     return (*_everyday(), *_metal_names(), *(f"{c} {a}" for c in cations for a in anions))
 
 
@@ -263,7 +208,7 @@ def known_names(kind: str | None = None) -> list[str]:
     return sorted(set(names))
 
 
-def _hint(near: list[str]) -> str | None:
+def _hint(near: list[str]) -> str:
     return (
         f"Nearest: {', '.join(near)}." if near else "Write a formula such as CuSO4, or a name such as copper sulfate."
     )
