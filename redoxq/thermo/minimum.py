@@ -224,15 +224,19 @@ class _Search:
         self._rebase(tableau, row, slot, entering, logs)
 
     def _add(self, tableau: Tableau, row: int, phase: int, logs: Array, residual: Array) -> None:
-        """The new phase takes the slot of the member that it uses up first."""
+        """The new phase takes the slot of the member that least of it brings to saturation or uses up."""
         shape = self.shape
         members = np.asarray(tableau.basis)
         column = tableau.nu[phase]
-        held = np.where(members < shape.aqueous, np.exp(np.clip(self.x[row], -700.0, 200.0)), np.maximum(residual, 0.0))
-        usable = (column > 1e-9) & (members < shape.first_pinned)
-        if not usable.any():
-            usable = (np.abs(column) > 1e-9) & (members < shape.first_pinned)
-        ratio = np.where(usable, held / np.where(usable, np.abs(column), 1.0), np.inf)
+        usable = (np.abs(column) > 1e-9) & (members < shape.first_pinned)
+        size = np.where(usable, np.abs(column), 1.0)
+        aqueous = members < shape.aqueous
+        held = np.exp(np.clip(self.x[row], -700.0, 200.0))
+        # A dissolved member that the phase gives off rises until the phase is only just saturated.
+        rise = np.expm1(np.clip(max(float(logs[phase]), 0.0) / size, 0.0, 200.0))
+        needed = np.where(column > 0.0, held, held * rise) / size
+        used_up = np.where(column > 0.0, np.maximum(residual, 0.0) / size, np.inf)
+        ratio = np.where(usable, np.where(aqueous, needed, used_up), np.inf)
         self._rebase(tableau, row, int(ratio.argmin()), phase, logs)
 
 
