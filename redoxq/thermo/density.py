@@ -32,10 +32,11 @@ SHARES = {"wt%": 1e-2, "g/kg": 1e-3, "ppm": 1e-6}
 
 @dataclass(frozen=True, slots=True)
 class Apparent:
-    """Parameters of the apparent density of one solute."""
+    """Parameters of the apparent density of one solute; the density of the solute itself where it is a liquid (CRC Handbook, section 4, at 20 °C)."""
 
     c: tuple[float, float, float, float, float]
     highest_share: float
+    liquid: float | None
 
 
 @dataclass(frozen=True, slots=True)
@@ -69,7 +70,8 @@ def apparent_densities() -> Mapping[str, Apparent]:
     for line, row in enumerate(read_table("densities.csv"), 2):
         numbers = [number_in(row, f"c{k}", "densities.csv", line) or 0.0 for k in range(5)]
         share = number_in(row, "highest_share", "densities.csv", line) or 0.3
-        found[row["formula"]] = Apparent((numbers[0], numbers[1], numbers[2], numbers[3], numbers[4]), share)
+        liquid = number_in(row, "liquid_kg_m3", "densities.csv", line)
+        found[row["formula"]] = Apparent((numbers[0], numbers[1], numbers[2], numbers[3], numbers[4]), share, liquid)
     return found
 
 
@@ -104,6 +106,14 @@ def solution_density(shares: Mapping[str, float], temperature: float) -> float:
 
 
 def _apparent(known: Apparent, solutes: float, celsius: float) -> float:
+    """By the fit within its reach; beyond it straight on to the density of the liquid solute, where there is one."""
+    if known.liquid is None or solutes <= known.highest_share:
+        return _fitted(known, solutes, celsius)
+    past = (solutes - known.highest_share) / (1.0 - known.highest_share)
+    return (1.0 - past) * _fitted(known, known.highest_share, celsius) + past * known.liquid
+
+
+def _fitted(known: Apparent, solutes: float, celsius: float) -> float:
     c0, c1, c2, c3, c4 = known.c
     value = (c0 * solutes + c1) * np.exp(1e-6 * (celsius + c4) ** 2) / (solutes + c2 + c3 * celsius)
     return float(value) if np.isfinite(value) and value > 200.0 else USUAL_APPARENT_DENSITY
