@@ -32,7 +32,16 @@ SHARES = {"wt%": 1e-2, "g/kg": 1e-3, "ppm": 1e-6}
 
 @dataclass(frozen=True, slots=True)
 class Apparent:
-    """Parameters of the apparent density of one solute; the density of the solute itself where it is a liquid (CRC Handbook, section 4, at 20 °C)."""
+    """Parameters of the apparent density of one solute.
+
+    Attributes
+    ----------
+    c : tuple of float
+    highest_share : float
+        Mass fraction to which the fit reaches.
+    liquid : float or None
+        kg/m3 of the solute itself near 20 °C where it is a liquid: CRC Handbook, section 4.
+    """
 
     c: tuple[float, float, float, float, float]
     highest_share: float
