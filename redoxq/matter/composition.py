@@ -57,6 +57,16 @@ def component_atoms(component: str) -> Mapping[str, int]:
     return {element: 1} if state is not None else dict(parse_formula(component).atoms)
 
 
+@lru_cache(maxsize=256)
+def broken_group(component: str) -> tuple[str, int] | None:
+    """What a whole group that oxidises leaves behind, and how often; None for all others."""
+    for row in read_table("groups.csv"):
+        if row["components"] == component and row["breaks_into"]:
+            name, _, number = row["breaks_into"].partition(":")
+            return name, int(number)
+    return None
+
+
 @lru_cache(maxsize=4096)
 def component_charge(component: str) -> int:
     """Charge of a component: its state, or that of the group."""

@@ -76,6 +76,8 @@ class Recipe:
     volume_L: float = 1.0
 
     def __post_init__(self) -> None:
+        if not 0.0 < self.volume_L < math.inf:
+            raise RecipeError(f"{self.volume_L:g} L of liquor is not possible.", hint="Give a volume above zero.")
         if self.pH is not None and not LOWEST_PH <= self.pH <= HIGHEST_PH:
             raise RecipeError(
                 f"pH {self.pH:g} is outside what a liquor in water can have.",

@@ -5,6 +5,7 @@ from __future__ import annotations
 import csv
 import hashlib
 import io
+import re
 from functools import cache
 from importlib.resources import files
 from importlib.resources.abc import Traversable
@@ -14,6 +15,8 @@ from redoxq.errors import DataError
 Row = dict[str, str]
 
 VERSION_LENGTH = 12
+
+_NUMBER = re.compile(r"[+-]?(\d+\.?\d*|\.\d+)([eE][+-]?\d{1,2})?", re.ASCII)
 
 
 def data_folder() -> Traversable:
@@ -52,6 +55,8 @@ def rows_of(text: str, name: str) -> tuple[Row, ...]:
     header = next(reader, None)
     if not header or any(not column.strip() for column in header):
         raise DataError(f"{name}: the first row must name every column.")
+    if twice := [column for column in header if header.count(column) > 1]:
+        raise DataError(f"{name}: the column {twice[0]} stands twice.")
     rows = []
     for number, cells in enumerate(reader, 2):
         if not any(cells):
@@ -71,10 +76,9 @@ def number_in(row: Row, column: str, name: str, line: int) -> float | None:
     text = row.get(column, "").strip()
     if not text:
         return None
-    try:
-        return float(text)
-    except ValueError:
-        raise DataError(f'{name}, row {line}, column {column}: "{text}" is not a number.') from None
+    if not _NUMBER.fullmatch(text):
+        raise DataError(f'{name}, row {line}, column {column}: "{text}" is not a number.')
+    return float(text)
 
 
 def table_names(folder: str) -> list[str]:
