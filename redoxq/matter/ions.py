@@ -115,7 +115,8 @@ def compound_named(name: str) -> Formula | None:
     Formula or None
         None where the words name no two ions.
     """
-    words, water = _crystal_water(name.split())
+    spoken = name.split()
+    words, water = _crystal_water(spoken) if spoken else (spoken, 0)
     for cut in range(1, len(words)):
         pair = _pair(" ".join(words[:cut]), " ".join(words[cut:]))
         if pair is not None:

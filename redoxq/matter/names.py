@@ -50,7 +50,7 @@ class Substance:
 
 @cache
 def _everyday() -> Mapping[str, Mapping[str, str]]:
-    return {plain_name(row["name"]): row for row in reversed(read_table("names.csv"))}
+    return {plain_name(row["name"]): row for row in read_table("names.csv")}
 
 
 @cache
