@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from functools import lru_cache
 
 from redoxq.errors import RedoxqError
@@ -9,6 +10,8 @@ from redoxq.matter.catalogue import catalogue
 from redoxq.matter.composition import components
 from redoxq.matter.formula import Formula, parse_formula
 from redoxq.matter.ions import ions, salt_text
+
+_BOUND_WATER = re.compile(r"\(H2O\)\d*")
 
 
 @lru_cache(maxsize=4096)
@@ -22,15 +25,27 @@ def usual_form(formula: Formula) -> Formula:
     Returns
     -------
     Formula
-        Of a species, else of a salt of known ions, with the same atoms, charge and components.
+        Of a species, else of a salt of known ions, with the same atoms, charge and components; of an ion without the
+        water bound to it.
     """
     if catalogue().all_of(formula.text):
         return formula
+    bare_ion = _without_water(formula)
+    if bare_ion is not None:
+        return bare_ion
     for text in (*_species(formula), *_salts(formula)):
         other = parse_formula(text)
         if _alike(formula, other):
             return other if formula.phase is None else parse_formula(f"{text}({formula.phase})")
     return formula
+
+
+def _without_water(formula: Formula) -> Formula | None:
+    """An ion without the water bound to it, which goes uncounted in water: Cr+3 for [Cr(H2O)6]3+."""
+    text = _BOUND_WATER.sub("", formula.text)
+    if not formula.charge or text == formula.text or not catalogue().all_of(text):
+        return None
+    return parse_formula(text)
 
 
 def _species(formula: Formula) -> list[str]:

@@ -9,6 +9,7 @@ from contextlib import suppress
 from redoxq.errors import FormulaError, Place, RedoxqError, SentenceError, UnknownNameError
 from redoxq.matter import names
 from redoxq.matter.formula import Formula, parse_formula
+from redoxq.matter.synonyms import usual_form
 from redoxq.talk.statement import Phrase
 
 _POWDERS = frozenset({"powder", "dust", "filings"})
@@ -79,7 +80,7 @@ def formula_heard(phrase: Phrase) -> Formula:
         When the text is neither.
     """
     try:
-        return parse_formula(phrase.text)
+        return usual_form(parse_formula(phrase.text))
     except FormulaError as error:
         with suppress(UnknownNameError, FormulaError):
             return names.substance(phrase.text).formula
