@@ -5,7 +5,7 @@ from __future__ import annotations
 import csv
 import hashlib
 import io
-import re
+import math
 from functools import cache
 from importlib.resources import files
 from importlib.resources.abc import Traversable
@@ -15,8 +15,6 @@ from redoxq.errors import DataError
 Row = dict[str, str]
 
 VERSION_LENGTH = 12
-
-_NUMBER = re.compile(r"[+-]?(\d+\.?\d*|\.\d+)([eE][+-]?\d{1,2})?", re.ASCII)
 
 
 def data_folder() -> Traversable:
@@ -76,9 +74,13 @@ def number_in(row: Row, column: str, name: str, line: int) -> float | None:
     text = row.get(column, "").strip()
     if not text:
         return None
-    if not _NUMBER.fullmatch(text):
+    try:
+        number = float(text)
+    except ValueError:
+        number = math.nan
+    if not math.isfinite(number) or "_" in text or not text.isascii():
         raise DataError(f'{name}, row {line}, column {column}: "{text}" is not a number.')
-    return float(text)
+    return number
 
 
 def table_names(folder: str) -> list[str]:
