@@ -21,6 +21,7 @@ from redoxq.matter.recipes import Air
 from redoxq.matter.tables import data_version
 from redoxq.rules.engine import Judgement, judge
 from redoxq.rules.practice import practice
+from redoxq.rules.rule import Effect
 from redoxq.thermo.constants import F, R
 from redoxq.thermo.couples import MetalForm, Oxidant, metal_form, oxidants
 from redoxq.thermo.forms import TRACE
@@ -310,11 +311,16 @@ def _happenings(branch: _Branch, form: MetalForm, end: EndState | None) -> tuple
         if key != form.product.key and amount > NOTABLE
     ]
     if branch.rows:
-        found += [
-            Happening(effect.subject, effect.text.partition("(s")[0] or form.metal.text)
-            for _, effect in branch.judgement.effects_of("happening")
-        ]
+        found += [one for _, effect in branch.judgement.effects_of("happening") if (one := _practised(effect, form))]
     return tuple(dict.fromkeys(found))
+
+
+def _practised(effect: Effect, form: MetalForm) -> Happening | None:
+    """A happening that practice adds; a film that nobody can name is left to the reasons."""
+    species = effect.text.partition("(s")[0]
+    if not species and effect.subject == "film":
+        return None if form.film is None else Happening("film", form.film.text)
+    return Happening(effect.subject, species or form.metal.text)
 
 
 def _warnings(branch: _Branch) -> tuple[tuple[Hazard, ...], tuple[Caution, ...]]:

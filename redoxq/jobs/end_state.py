@@ -11,7 +11,7 @@ from numpy.typing import NDArray
 from redoxq.errors import NotConvergedError
 from redoxq.jobs.answers import EndState, Residue
 from redoxq.matter.catalogue import Species, catalogue
-from redoxq.matter.composition import split_component
+from redoxq.matter.composition import broken_group, split_component
 from redoxq.matter.formula import molar_mass
 from redoxq.thermo import activity, certificate
 from redoxq.thermo.couples import MetalForm, Oxidant
@@ -96,7 +96,7 @@ class _Rest:
     def __init__(self, reach: Reach, held: Oxidant | None) -> None:
         self.reach, self.held = reach, held
         acting = [o for o in reach.acting if held is None or o is held or o.product.phase != "g"]
-        merged = frozenset().union(reach.form.components, *(o.changing - {"H(I)", "O(-II)"} for o in acting))
+        merged = frozenset().union(reach.form.components, *(_merging(o) for o in acting))
         merged |= {c for o in acting if o.plated for c in _states_between(o)}
         gases = {o.product.key for o in acting if o.product.phase == "g"}
         liquor = reach.liquor
@@ -163,6 +163,12 @@ class _Rest:
 def _protons(liquor: Liquor) -> Array:
     column = liquor.network.components.index(PROTON)
     return np.abs(liquor.network.shape.reagents[:, column]).astype(float)
+
+
+def _merging(oxidant: Oxidant) -> frozenset[str]:
+    """Components that electrons turn into each other; what a whole group breaks into stays a component of its own."""
+    whole = frozenset(name for name in oxidant.changing if broken_group(name))
+    return whole or oxidant.changing - {"H(I)", "O(-II)"}
 
 
 def _states_between(oxidant: Oxidant) -> set[str]:

@@ -9,6 +9,7 @@ from numpy.typing import NDArray
 
 from redoxq.errors import NotConvergedError
 from redoxq.thermo.equilibrium import Equilibrium, standard_terms
+from redoxq.thermo.minimum import NOTHING
 from redoxq.thermo.tableau import Array
 
 BALANCE = 1e-9
@@ -102,7 +103,7 @@ def _balances(state: Equilibrium, amounts: Array) -> Array:
         residual = np.abs(totals - everything @ tableau.nu)
         gross = np.abs(everything) @ np.abs(tableau.nu) + np.abs(totals)
         noise = 1e-13 * (np.abs(amounts[members]) @ np.abs(tableau.reagents) + np.abs(everything) @ np.abs(tableau.nu))
-        share = np.where(residual <= noise, 0.0, residual / np.maximum(gross, 1e-300)).max(axis=1)
+        share = np.where(residual <= np.maximum(noise, NOTHING), 0.0, residual / np.maximum(gross, 1e-300)).max(axis=1)
         free = basis < shape.aqueous
         mine = np.where(free, np.log(np.maximum(everything[:, basis], 1e-320)), np.inf)
         touching = (np.abs(tableau.nu[: shape.aqueous]) > 1e-9) & free

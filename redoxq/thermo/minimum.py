@@ -15,11 +15,15 @@ BALANCE = 1e-12
 NOISE = 1e-13
 """Residuals below this share of the amounts are rounding, not signal."""
 
+NOTHING = 1e-60
+"""mol/kg: a species that nothing forces to be there falls without end; below this it is absent."""
+
 SUPERSATURATION = 1e-9
 DOMINANCE = 1.5
 LARGEST_EXPONENT = 230.0
 PASSES = 400
 EARLY_PHASE_CHANGES = 12
+PHASE_TRIAL = 10
 
 
 @dataclass(frozen=True, slots=True)
@@ -89,7 +93,7 @@ class _Search:
         good = self._step_was_good(rows, signal, fixed)
         if not good.all():
             self._shorten(rows[~good])
-        closed = (fixed | (np.abs(residual) <= np.maximum(BALANCE * own, NOISE * scale))).all(axis=1)
+        closed = (fixed | (np.abs(residual) <= np.maximum(np.maximum(BALANCE * own, NOISE * scale), NOTHING))).all(axis=1)
         pending = good.copy()
         pending[pending] = ~self._improve_basis(tableau, rows[pending], logs[pending], closed[pending])
         pending[pending] = ~self._change_phase(
@@ -199,7 +203,9 @@ class _Search:
         saturation[:, members[phase] - shape.aqueous] = -np.inf
         worst = saturation.argmax(axis=1) if shape.phases else np.zeros(len(rows), dtype=np.int64)
         excess = saturation[np.arange(len(rows)), worst] if shape.phases else np.full(len(rows), -np.inf)
-        allowed = closed | ((self.early[rows] < EARLY_PHASE_CHANGES) & self._near(residual, own, members))
+        # A balance that only a phase can close does not come near by itself: now and then one is let in unasked.
+        due = self._near(residual, own, members) | (self.passes[rows] % PHASE_TRIAL == 0)
+        allowed = closed | ((self.early[rows] < EARLY_PHASE_CHANGES) & due)
         drops = allowed & negative
         adds = allowed & ~negative & (excess > SUPERSATURATION)
         for k in np.flatnonzero(drops):

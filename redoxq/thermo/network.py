@@ -10,7 +10,7 @@ import numpy as np
 
 from redoxq.errors import DataError
 from redoxq.matter.catalogue import Species, catalogue
-from redoxq.matter.composition import component_atoms, component_charge, components, split_component
+from redoxq.matter.composition import broken_group, component_atoms, component_charge, components, split_component
 from redoxq.matter.formula import Formula, parse_formula
 from redoxq.thermo.tableau import Integers, Stoichiometry
 
@@ -50,8 +50,15 @@ def terms(formula: Formula, states: Mapping[str, int], merged: frozenset[str]) -
         element, state = split_component(component)
         water -= number * component_atoms(component).get("O", 0)
         if component not in merged:
-            counts[component] = number
+            counts[component] = counts.get(component, 0) + number
             charge -= number * component_charge(component)
+        elif (broken := broken_group(component)) is not None:
+            target, pieces = broken[0], broken[1] * number
+            counts[target] = counts.get(target, 0) + pieces
+            oxide = number * component_atoms(component).get("O", 0) - pieces * component_atoms(target).get("O", 0)
+            water += oxide
+            charge -= pieces * component_charge(target)
+            electrons -= number * component_charge(component) - pieces * component_charge(target) + 2 * oxide
         elif element == "H":
             electrons += number * (1 - (state or 0))
         elif element == "O":
