@@ -1,0 +1,142 @@
+"""Oxidants weighed against a metal: whole reactions, driving forces, and what practice makes of them."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from redoxq.jobs.facts import Tried, contact_facts
+from redoxq.matter.composition import split_component
+from redoxq.rules.engine import Judgement, judge
+from redoxq.rules.practice import practice
+from redoxq.thermo.constants import F, R
+from redoxq.thermo.couples import MetalForm, Oxidant
+from redoxq.thermo.forms import TRACE
+from redoxq.thermo.reactions import Reaction, combine, standard_quantities
+from redoxq.thermo.speciation import Liquor, dissolved_oxygen
+
+COVERAGE = 2.0
+"""Standard uncertainties are widened to cover 95 %."""
+
+ENOUGH = 2e-3
+"""Equivalents per kg of water from which an oxidant does more than dissolved oxygen can."""
+
+COMMON = frozenset({"hydrogen", "oxygen", "metal ion"})
+"""Kinds that a chemist thinks of first where nothing acts."""
+
+
+@dataclass(frozen=True, slots=True)
+class Weighed:
+    """One oxidant with its whole reaction, its driving force and how much of it there is."""
+
+    tried: Tried
+    reaction: Reaction
+    standard_emf: float
+    delta_G: float
+    log10_K: float
+    capacity: float
+
+
+@dataclass(frozen=True, slots=True)
+class Judged:
+    """A contact judged with or without air."""
+
+    rows: tuple[Weighed, ...]
+    judgement: Judgement
+
+    @property
+    def verdict(self) -> str:
+        """immune, passive, undecided or attacked."""
+        return self.judgement.verdict_of() if self.rows else "immune"
+
+    @property
+    def acting(self) -> tuple[Weighed, ...]:
+        """Oxidants that attack."""
+        return tuple(row for row, acts in zip(self.rows, self.judgement.attacks, strict=True) if acts)
+
+    @property
+    def leading(self) -> Weighed | None:
+        """What does most: the strongest of the oxidants that there is enough of; else the strongest that might act."""
+        if self.acting:
+            return max(self.acting, key=lambda row: (row.capacity >= ENOUGH, row.tried.driving))
+        idle = [row for k, row in enumerate(self.rows) if self._is_idle(k)]
+        free = [row for row in self.rows if row not in idle]
+        driven = [row for row in free if row.tried.driving > 0] or [row for row in idle if row.tried.driving > 0]
+        first = driven or free or self.rows
+        return max(first, key=lambda row: (row.tried.oxidant.kind in COMMON, row.tried.driving), default=None)
+
+    def _is_idle(self, row: int) -> bool:
+        return any(
+            effect.kind == "oxidant" and effect.subject == "idle"
+            for rule in self.judgement.rules_of_row(row)
+            for effect in rule.effects
+        )
+
+
+def final_oxidants(found: list[Oxidant], liquor: Liquor) -> list[Oxidant]:
+    """Leave out reductions to a dissolved state that would rather go on to the metal (copper(I) without a ligand)."""
+    plating = {oxidant.plated: float(oxidant.potential[0]) for oxidant in found if oxidant.plated}
+
+    def stays(oxidant: Oxidant) -> bool:
+        elements = {split_component(name)[0] for name in oxidant.changing}
+        metal = next((plating[symbol] for symbol in elements if symbol in plating), None)
+        if metal is None or oxidant.plated:
+            return True
+        before = max((float(total[0]) for name, total in liquor.totals.items() if name in oxidant.changing))
+        shift = R * float(liquor.temperature[0]) / F * np.log(max(before / TRACE, 1.0)) / oxidant.half.electrons
+        return bool(float(oxidant.potential[0]) - shift > metal)
+
+    return [oxidant for oxidant in found if stays(oxidant)]
+
+
+def weighed(liquor: Liquor, form: MetalForm, oxidant: Oxidant) -> Weighed:
+    """Weigh one oxidant against a metal."""
+    reaction = combine(oxidant.half, form.half)
+    quantities = standard_quantities(reaction, liquor.temperature[:1])
+    electrons = int(np.lcm(oxidant.half.electrons, form.half.electrons)) // _divisor(oxidant, form, reaction)
+    spread = float(quantities.uncertainty[0]) / (electrons * F)
+    error = float(liquor.model.expected_error(liquor.state.ionic_strength)[0])
+    activity = error * R * float(liquor.temperature[0]) / F
+    driving = float(oxidant.potential[0] - form.potential[0])
+    return Weighed(
+        Tried(oxidant, driving, COVERAGE * float(np.hypot(spread, activity))),
+        reaction,
+        float(quantities.potential(electrons)[0]),
+        float(quantities.delta_G[0]) / 1000.0,
+        float(quantities.log10_K[0]),
+        _capacity(liquor, oxidant),
+    )
+
+
+def _divisor(oxidant: Oxidant, form: MetalForm, reaction: Reaction) -> int:
+    """What the combined reaction was divided by to make its numbers small."""
+    common = int(np.lcm(oxidant.half.electrons, form.half.electrons))
+    metal = next(-c for s, c in zip(form.half.species, form.half.coefficients, strict=True) if s is form.metal)
+    whole = common // form.half.electrons * metal
+    shown = next(c for s, c in zip(reaction.species, reaction.coefficients, strict=True) if s is form.metal)
+    return abs(whole // shown)
+
+
+def _capacity(liquor: Liquor, oxidant: Oxidant) -> float:
+    """Electrons that an oxidant could take up, mol per kg of water."""
+    if oxidant.id == "oxygen":
+        return 4.0 * float(dissolved_oxygen(liquor)[0])
+    if oxidant.id == "hydrogen":
+        return np.inf
+    return max(
+        (oxidant.half.electrons * float(total[0]) for name, total in liquor.totals.items() if name in oxidant.changing),
+        default=0.0,
+    )
+
+
+def judged(liquor: Liquor, form: MetalForm, rows: tuple[Weighed, ...], air: bool, powder: bool) -> Judged:
+    """Let practice judge a contact with or without air."""
+    facts = contact_facts(liquor, form, [row.tried for row in rows], air, powder)
+    return Judged(rows, judge(practice(form.metal.text), facts))
+
+
+def with_product(branch: Judged, liquor: Liquor, form: MetalForm) -> Judged:
+    """The same verdict with its reactions written to another product of the metal."""
+    rows = tuple(weighed(liquor, form, row.tried.oxidant) for row in branch.rows)
+    return Judged(rows, branch.judgement)
