@@ -39,11 +39,13 @@ class Reaction:
         """Electrons that change hands when the reaction runs once as written; 0 where none do."""
         if self.electrons:
             return abs(self.electrons)
-        gained: dict[str, int] = {}
+        before: dict[str, list[int]] = {}
+        after: dict[str, list[int]] = {}
         for species, coefficient in zip(self.species, self.coefficients, strict=True):
-            for element, total in _states(species).items():
-                gained[element] = gained.get(element, 0) + coefficient * total
-        return sum(change for change in gained.values() if change > 0)
+            side = before if coefficient < 0 else after
+            for element, states in _states(species).items():
+                side.setdefault(element, []).extend(states * abs(coefficient))
+        return sum(_gained(states, after.get(element, [])) for element, states in before.items())
 
     def __str__(self) -> str:
         left = [(-c, s) for s, c in zip(self.species, self.coefficients, strict=True) if c < 0]
@@ -79,21 +81,31 @@ def _term(count: int, species: Species) -> str:
     return key if count == 1 else f"{count} {key}"
 
 
-def _states(species: Species) -> Mapping[str, int]:
-    """Sum of the oxidation states of each element, hydrogen and oxygen in their odd states included."""
-    totals: dict[str, int] = {}
+def _states(species: Species) -> Mapping[str, list[int]]:
+    """Oxidation state of every atom by element, hydrogen and oxygen in their usual states included."""
+    found: dict[str, list[int]] = {}
     atoms = dict(species.formula.atoms)
     rest = {"H": atoms.get("H", 0), "O": atoms.get("O", 0)}
     for component, number in species.components.items():
         element, state = split_component(component)
         if state is not None:
-            totals[element] = totals.get(element, 0) + state * number
+            found.setdefault(element, []).extend([state] * number)
         for symbol, count in component_atoms(component).items():
             if symbol in rest:
                 rest[symbol] -= count * number
-    totals["H"] = totals.get("H", 0) + rest["H"]
-    totals["O"] = totals.get("O", 0) - 2 * rest["O"]
-    return totals
+    found.setdefault("H", []).extend([1] * rest["H"])
+    found.setdefault("O", []).extend([-2] * rest["O"])
+    return found
+
+
+def _gained(before: list[int], after: list[int]) -> int:
+    """Electrons that the atoms of one element take up, each going to the state of its own rank.
+
+    In that order the fewest change hands: of 2 Cu+ one takes the electron that the other gives.
+    """
+    if len(before) != len(after):  # part of the element is bound in groups that have no state
+        return max(sum(before) - sum(after), 0)
+    return sum(max(old - new, 0) for old, new in zip(sorted(before), sorted(after), strict=True))
 
 
 @dataclass(frozen=True, slots=True)
