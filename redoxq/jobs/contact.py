@@ -51,7 +51,9 @@ def contact(question: ContactQuestion) -> ContactAnswer:
     liquor = speciate(question.recipe)
     aired = liquor if open_to_air else replace(liquor, oxygen_pressure=oxygen_pressure(Air.open, liquor.temperature))
     form = metal_form(aired, question.metal)
-    rows = tuple(weighed(aired, form, oxidant) for oxidant in final_oxidants(oxidants(aired, question.metal), aired))
+    rows = tuple(
+        weighed(aired, form, oxidant) for oxidant in final_oxidants(oxidants(aired, question.metal), aired, form)
+    )
     under_air = judged(aired, form, rows, True, question.powder)
     without = judged(
         aired, form, tuple(row for row in rows if row.tried.oxidant.id != "oxygen"), False, question.powder

@@ -12,7 +12,7 @@ from redoxq.rules.engine import Judgement, judge
 from redoxq.rules.practice import practice
 from redoxq.thermo.constants import F, R
 from redoxq.thermo.couples import MetalForm, Oxidant
-from redoxq.thermo.forms import TRACE
+from redoxq.thermo.forms import TRACE, dissolved_form, electrode_potential, states_of
 from redoxq.thermo.reactions import Reaction, combine, standard_quantities
 from redoxq.thermo.speciation import Liquor, dissolved_oxygen
 
@@ -62,8 +62,9 @@ class Judged:
             return max(self.acting, key=lambda row: (row.capacity >= ENOUGH, row.tried.driving))
         idle = [row for k, row in enumerate(self.rows) if self._is_idle(k)]
         free = [row for row in self.rows if row not in idle]
-        driven = [row for row in free if row.tried.driving > 0] or [row for row in idle if row.tried.driving > 0]
-        first = driven or free or self.rows
+        if driven := [row for row in free if row.tried.driving > 0]:
+            return max(driven, key=lambda row: (row.capacity >= ENOUGH, row.tried.driving))
+        first = [row for row in idle if row.tried.driving > 0] or free or self.rows
         return max(first, key=lambda row: (row.tried.oxidant.kind in COMMON, row.tried.driving), default=None)
 
     def _is_idle(self, row: int) -> bool:
@@ -74,20 +75,39 @@ class Judged:
         )
 
 
-def final_oxidants(found: list[Oxidant], liquor: Liquor) -> list[Oxidant]:
-    """Leave out reductions to a dissolved state that would rather go on to the metal (copper(I) without a ligand)."""
+def final_oxidants(found: list[Oxidant], liquor: Liquor, form: MetalForm) -> list[Oxidant]:
+    """Leave out reductions that do not stop where they are written.
+
+    A dissolved state that would rather go on to its metal (copper(I) without a ligand), and a metal that would rather
+    stop at a lower state at the potential of the one it is to plate on (iron from iron(III) on copper).
+    """
     plating = {oxidant.plated: float(oxidant.potential[0]) for oxidant in found if oxidant.plated}
 
     def stays(oxidant: Oxidant) -> bool:
         elements = {split_component(name)[0] for name in oxidant.changing}
         metal = next((plating[symbol] for symbol in elements if symbol in plating), None)
-        if metal is None or oxidant.plated:
+        if oxidant.plated:
+            return _plates(oxidant, liquor, float(form.potential[0]))
+        if metal is None:
             return True
         before = max((float(total[0]) for name, total in liquor.totals.items() if name in oxidant.changing))
         shift = R * float(liquor.temperature[0]) / F * np.log(max(before / TRACE, 1.0)) / oxidant.half.electrons
         return bool(float(oxidant.potential[0]) - shift > metal)
 
     return [oxidant for oxidant in found if stays(oxidant)]
+
+
+def _plates(oxidant: Oxidant, liquor: Liquor, volts: float) -> bool:
+    """Tell whether every state between the ion and its metal goes on to the metal at a potential (V)."""
+    (component,) = (name for name in oxidant.changing if name in liquor.totals)
+    total = max(float(liquor.totals[component][0]), TRACE)
+    highest = split_component(component)[1] or 0
+    for name in states_of(liquor, oxidant.plated):
+        state = split_component(name)[1] or 0
+        between = dissolved_form(liquor, name, total, fresh=True) if state < highest else None
+        if between is not None and float(electrode_potential(between, state, liquor.temperature)[0]) < volts:
+            return False
+    return True
 
 
 def weighed(liquor: Liquor, form: MetalForm, oxidant: Oxidant) -> Weighed:

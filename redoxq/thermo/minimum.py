@@ -93,7 +93,8 @@ class _Search:
         good = self._step_was_good(rows, signal, fixed)
         if not good.all():
             self._shorten(rows[~good])
-        closed = (fixed | (np.abs(residual) <= np.maximum(np.maximum(BALANCE * own, NOISE * scale), NOTHING))).all(axis=1)
+        floor = np.maximum(np.maximum(BALANCE * own, NOISE * scale), NOTHING)
+        closed = (fixed | (np.abs(residual) <= floor)).all(axis=1)
         pending = good.copy()
         pending[pending] = ~self._improve_basis(tableau, rows[pending], logs[pending], closed[pending])
         pending[pending] = ~self._change_phase(
