@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Mapping, Set
 from dataclasses import dataclass, replace
 from functools import cache
 
@@ -230,10 +230,10 @@ def _dissolved_oxidant(liquor: Liquor, couple: Couple, standing: Mapping[str, Sp
     oxidised = _oxidised(liquor, couple, standing)
     if oxidised is None:
         return None
-    reduced, form = _reduced(liquor, couple)
+    changing = frozenset({couple.oxidised, couple.reduced})
+    reduced, form = _reduced(liquor, couple, standing.keys() | changing)
     if reduced is None:
         return None
-    changing = frozenset({couple.oxidised, couple.reduced})
     half = half_reaction(oxidised, reduced, _ratio(oxidised, reduced, couple), changing, standing, is_alkaline(liquor))
     values = {reduced: _value_at(liquor, reduced, couple.reduced, form)}
     return Oxidant(
@@ -263,14 +263,20 @@ def _oxidised(liquor: Liquor, couple: Couple, standing: Mapping[str, Species]) -
     return None if form is None else form.species[int(form.leading[0])]
 
 
-def _reduced(liquor: Liquor, couple: Couple) -> tuple[Species | None, Form | None]:
+def _reduced(liquor: Liquor, couple: Couple, writable: Set[str]) -> tuple[Species | None, Form | None]:
+    """What the oxidant becomes, as a species whose other components can stand in an equation."""
     if couple.reduced == "O(-II)":
         return catalogue().get("H2O(l)"), None
     if couple.product:
         product = catalogue().get(couple.product)
         return product, gas_form(liquor, product, couple.reduced)
     form = stable_form(liquor, couple.reduced)
-    return (None, None) if form is None else (form.species[int(form.leading[0])], form)
+    if form is None:
+        return None, None
+    leading = form.species[int(form.leading[0])]
+    if leading.components.keys() <= writable:
+        return leading, form
+    return next(((one, form) for one in form.species if one.components.keys() <= writable), (None, None))
 
 
 def _ratio(oxidised: Species, reduced: Species, couple: Couple) -> tuple[int, int]:

@@ -17,7 +17,7 @@ from redoxq.thermo.tableau import Array, Basis
 
 WATER_KG_PER_MOL = 0.01801528
 AGREEMENT = 1e-11
-CYCLES = 80
+CYCLES = 50
 HISTORY = 4
 
 

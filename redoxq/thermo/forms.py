@@ -20,6 +20,9 @@ M. Pourbaix, Atlas of Electrochemical Equilibria in Aqueous Solutions (1966)."""
 FILM_SOLUBILITY = 1e-4
 """mol/kg: a solid that holds the dissolved metal below this can cover the metal."""
 
+LN_ABSENT = float(np.log(1e-30))
+"""ln mol/kg below which a state that the liquor nominally holds (all of it bound elsewhere) counts as absent."""
+
 FORMING = frozenset({"yes", "film"})
 
 
@@ -67,7 +70,7 @@ def dissolved_form(liquor: Liquor, component: str, total: float = TRACE, fresh: 
         return None
     count, offset = _lines(liquor, component, species)
     known = None if fresh else liquor.potentials.get(component)
-    if known is None or not np.all(np.isfinite(known)):
+    if known is None or not _there(known[:, None] * count + offset, species):
         known = _potential_at(count, offset, total)
     abundance = known[:, None] * count + offset
     return Form(component, species, _leading(species, abundance), known)
@@ -184,6 +187,12 @@ def _lines(liquor: Liquor, component: str, species: tuple[Species, ...]) -> tupl
     count = np.array([one.components[component] for one in species], dtype=float)
     rest = np.column_stack([_sum(liquor, one, without=component) for one in species])
     return count, rest - standard_value(liquor, species) - liquor.ln_gamma(species)
+
+
+def _there(abundance: Array, species: tuple[Species, ...]) -> bool:
+    """Tell whether a state is in the liquor other than bound by another element in a complex that never lets go."""
+    free = [k for k, one in enumerate(species) if len(one.components) == 1] or list(range(len(species)))
+    return bool(np.all(abundance[:, free].max(axis=1) > LN_ABSENT))
 
 
 def _potential_at(count: Array, offset: Array, total: float) -> Array:

@@ -61,7 +61,9 @@ def half_reaction(
             continue
         surplus = ratio[0] * oxidised.components.get(component, 0) - ratio[1] * reduced.components.get(component, 0)
         if surplus:
-            carrier = standing[component]
+            carrier = standing.get(component)
+            if carrier is None:
+                raise ReactionError(f"No dissolved species stands for {component} alone.")
             share, left = divmod(surplus, carrier.components[component])
             if left:
                 raise ReactionError(f"{component} cannot be shared out between {oxidised.key} and {reduced.key}.")
