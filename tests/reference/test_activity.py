@@ -15,7 +15,8 @@ STRENGTHS = (0.1, 0.5, 1.0)
 # R. A. Robinson, R. H. Stokes, Electrolyte Solutions, 2nd ed. (1959), appendices 8.9 and 8.10, from memory;
 # H2SO4, CuSO4, ZnSO4, MgSO4 on the scale of the tables, where the figure at 0.1 mol/kg is an estimate.
 # The last number is the share by which the model may differ: its reviews state a few per cent for strong
-# electrolytes; nitrates of potassium and silver, and salts that pair, are what one coefficient a pair does worst.
+# electrolytes (the chlorides of nickel, iron, manganese and cobalt are fitted to this table);
+# nitrates of potassium and silver, and salts that pair, are what one coefficient a pair does worst.
 TABLES = [
     ("HCl", "H+", 1, "Cl-", 1, (0.796, 0.757, 0.809), 0.03),
     ("HNO3", "H+", 1, "NO3-", 1, (0.791, 0.720, 0.724), 0.03),
@@ -27,6 +28,11 @@ TABLES = [
     ("KNO3", "K+", 1, "NO3-", 1, (0.739, 0.545, 0.443), 0.10),
     ("CaCl2", "Ca+2", 1, "Cl-", 2, (0.518, 0.448, 0.500), 0.05),
     ("MgCl2", "Mg+2", 1, "Cl-", 2, (0.528, 0.480, 0.569), 0.05),
+    ("NiCl2", "Ni+2", 1, "Cl-", 2, (0.522, 0.464, 0.536), 0.05),
+    ("FeCl2", "Fe+2", 1, "Cl-", 2, (0.518, 0.450, 0.506), 0.05),
+    ("MnCl2", "Mn+2", 1, "Cl-", 2, (0.516, 0.440, 0.479), 0.05),
+    ("CoCl2", "Co+2", 1, "Cl-", 2, (0.522, 0.462, 0.531), 0.07),
+    ("CdCl2", "Cd+2", 1, "Cl-", 2, (0.2280, 0.1006, 0.0669), 0.07),
     ("Na2SO4", "Na+", 2, "SO4-2", 1, (0.452, 0.270, 0.204), 0.05),
     ("H2SO4", "H+", 2, "SO4-2", 1, (0.2655, 0.1557, 0.1316), 0.12),
     ("AgNO3", "Ag+", 1, "NO3-", 1, (0.734, 0.536, 0.429), 0.12),
