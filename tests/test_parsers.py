@@ -32,8 +32,12 @@ def test_kept_tables_are_of_this_grammar(name: str) -> None:
     if f'"made_of":"{parsers._made_of(name, text)}"' not in kept:
         # Tables of another release of lark are passed over by the program; those of another grammar are stale.
         with pytest.MonkeyPatch.context() as patch:
-            found = {version for version in ("1.3.1", lark.__version__) if not patch.setattr(lark, "__version__", version)
-                     and f'"made_of":"{parsers._made_of(name, text)}"' in kept}
+            found = {
+                version
+                for version in ("1.3.1", lark.__version__)
+                if not patch.setattr(lark, "__version__", version)
+                and f'"made_of":"{parsers._made_of(name, text)}"' in kept
+            }
         assert found, f"grammar/{name}.tables.json is not of grammar/{name}.lark"
 
 

@@ -19,8 +19,13 @@ AT_25 = 298.15
 ZINC_COPPER = frozenset({"Zn(0)", "Zn(II)", "Cu(0)", "Cu(I)", "Cu(II)"})
 
 
-def solved(reagents: list[str], amounts: np.ndarray, temperature: float = AT_25, pinned: np.ndarray | None = None,
-           **selection: object) -> tuple[Network, Equilibrium]:
+def solved(
+    reagents: list[str],
+    amounts: np.ndarray,
+    temperature: float = AT_25,
+    pinned: np.ndarray | None = None,
+    **selection: object,
+) -> tuple[Network, Equilibrium]:
     web = network(tuple(reagents), Selection(**selection))
     rows = np.atleast_2d(amounts)
     state = equilibrium(web, rows, np.full(len(rows), temperature), activity.choose(web.aqueous), pinned)
@@ -175,14 +180,31 @@ def test_random_liquors_are_solved_and_certified() -> None:
     from redoxq.matter.composition import components
     from redoxq.matter.formula import parse_formula
 
-    common = ["Na+", "K+", "NH4+", "Mg+2", "Ca+2", "Al+3", "Fe+2", "Fe+3", "Ni+2", "Cu+2", "Zn+2", "Ag+", "Cd+2", "Pb+2"]
+    common = [
+        "Na+",
+        "K+",
+        "NH4+",
+        "Mg+2",
+        "Ca+2",
+        "Al+3",
+        "Fe+2",
+        "Fe+3",
+        "Ni+2",
+        "Cu+2",
+        "Zn+2",
+        "Ag+",
+        "Cd+2",
+        "Pb+2",
+    ]
     partners = ["Cl-", "Br-", "I-", "F-", "NO3-", "SO4-2", "CO3-2", "PO4-3", "CN-", "SCN-", "CH3COO-", "S2O3-2", "OH-"]
     ions = {ion.text: ion.formula for ion in names.ions()}
     rng = np.random.default_rng(20260101)
     solved_count = tried = 0
     for _ in range(200):
-        picks = {names.salt_text(ions[common[rng.integers(len(common))]], ions[partners[rng.integers(len(partners))]])
-                 for _ in range(rng.integers(1, 5))}
+        picks = {
+            names.salt_text(ions[common[rng.integers(len(common))]], ions[partners[rng.integers(len(partners))]])
+            for _ in range(rng.integers(1, 5))
+        }
         reagents = sorted(text for text in picks if text != "HOH")
         if not reagents or not any(components(parse_formula(text)) for text in reagents):
             continue
