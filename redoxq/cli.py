@@ -7,6 +7,7 @@ import os
 import sys
 from collections.abc import Iterable, Sequence
 from contextlib import suppress
+from io import TextIOWrapper
 from shutil import get_terminal_size
 
 from redoxq import __version__
@@ -32,6 +33,7 @@ def main(arguments: Sequence[str] | None = None) -> int:
     try:
         if options.command is None:
             return _talk()
+        _never_choke(options.json)
         sentences = _stream() if options.sentence == "-" else [options.sentence]
         return _ask(sentences, options.json)
     except BrokenPipeError:
@@ -55,10 +57,16 @@ def _parser() -> argparse.ArgumentParser:
     return parser
 
 
+def _never_choke(as_json: bool) -> None:
+    """Let what the output cannot hold, such as half a character of the command line, be written as an escape."""
+    for stream in (sys.stdout, sys.stderr):
+        if isinstance(stream, TextIOWrapper):
+            stream.reconfigure(encoding="utf-8" if as_json else None, errors="backslashreplace")
+
+
 def _stream() -> Iterable[str]:
-    reconfigure = getattr(sys.stdin, "reconfigure", None)
-    if reconfigure is not None:
-        reconfigure(errors="replace")
+    if isinstance(sys.stdin, TextIOWrapper):
+        sys.stdin.reconfigure(errors="replace")
     return (line.strip("\r\n") for line in sys.stdin if line.strip())
 
 
