@@ -18,7 +18,8 @@ Capture = pytest.CaptureFixture[str]
 
 def run(*arguments: str, text: str | bytes | None = None) -> subprocess.CompletedProcess[bytes]:
     fed = text.encode() if isinstance(text, str) else text
-    return subprocess.run([sys.executable, "-m", "redoxq", *arguments], input=fed or b"", capture_output=True, timeout=60)
+    command = [sys.executable, "-m", "redoxq", *arguments]
+    return subprocess.run(command, input=fed or b"", capture_output=True, timeout=60)
 
 
 def numbers(value: Any) -> list[float]:
@@ -50,8 +51,8 @@ def ask_json(capsys: Capture, sentence: str) -> tuple[int, dict[str, Any]]:
 
 EVERY = {"statement", "kind", "summary", "temperature_K", "assumptions"}
 REACTION = {"reaction", "electrons", "standard_emf_V", "delta_G_kJ_mol", "log10_K"}
-CONTACT = {"verdict", "pressure_bar", "validity", "without_air", "under_air", "happenings", "reasons", "cautions", "hazards",
-           "liquor", "data_version", "emf_V", "emf_uncertainty_V"}
+CONTACT = {"verdict", "pressure_bar", "validity", "without_air", "under_air", "happenings", "reasons", "cautions",
+           "hazards", "liquor", "data_version", "emf_V", "emf_uncertainty_V"}
 
 
 @pytest.mark.parametrize(("sentence", "kind", "keys"), [

@@ -61,8 +61,9 @@ def test_the_installed_wheel_answers(wheel: Path, tmp_path: Path) -> None:
                     "--quiet", wheel], check=True, capture_output=True, timeout=120)
     # Numpy and lark are those of the running environment; a plain path file reads no editable redoxq in it.
     (own / "borrowed.pth").write_text("\n".join(site.getsitepackages()))
-    done = subprocess.run([scripts / "redoxq", "ask", SENTENCE, "--json"], cwd=tmp_path, capture_output=True, timeout=60,
-                          env={key: value for key, value in os.environ.items() if key != "PYTHONPATH"})
+    environment = {key: value for key, value in os.environ.items() if key != "PYTHONPATH"}
+    done = subprocess.run([scripts / "redoxq", "ask", SENTENCE, "--json"], cwd=tmp_path, env=environment,
+                          capture_output=True, timeout=60)
     assert done.returncode == 0, done.stderr.decode()
     assert json.loads(done.stdout)["verdict"] == "attacked"
     script = "import redoxq.data; print(redoxq.__file__, redoxq.data.__file__)"
