@@ -14,6 +14,9 @@ from redoxq.thermo.speciation import Liquor
 
 LEAST_SHOWN = 1e-30
 
+LEAST_PARTICLES = 1e-4
+"""mol/kg below which the ions of the water itself would count in an osmotic coefficient."""
+
 
 def liquor_sheet(liquor: Liquor) -> LiquorSheet:
     """pH, ionic strength, density, activities and every species of a liquor."""
@@ -93,7 +96,7 @@ def _osmotic_coefficient(liquor: Liquor) -> float | None:
     for reagent, amount in zip(liquor.reagents, liquor.amounts[0], strict=True):
         parts = _ions_of(parse_formula(reagent))
         particles += float(amount) * (1 if parts is None else sum(number for _, number in parts))
-    if particles <= 0.0:
+    if particles < LEAST_PARTICLES:
         return None
     return float(-liquor.state.ln_water_activity[0] / (particles * WATER_MOLAR_MASS / 1000.0))
 

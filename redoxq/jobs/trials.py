@@ -60,14 +60,15 @@ class Judged:
         """What does most: the strongest of the oxidants that there is enough of; else the strongest that might act."""
         if self.acting:
             return max(self.acting, key=lambda row: (row.capacity >= ENOUGH, row.tried.driving))
-        idle = [row for k, row in enumerate(self.rows) if self._is_idle(k)]
+        idle = [row for k, row in enumerate(self.rows) if self.is_idle(k)]
         free = [row for row in self.rows if row not in idle]
         if driven := [row for row in free if row.tried.driving > 0]:
             return max(driven, key=lambda row: (row.capacity >= ENOUGH, row.tried.driving))
         first = [row for row in idle if row.tried.driving > 0] or free or self.rows
         return max(first, key=lambda row: (row.tried.oxidant.kind in COMMON, row.tried.driving), default=None)
 
-    def _is_idle(self, row: int) -> bool:
+    def is_idle(self, row: int) -> bool:
+        """Tell whether practice holds the oxidant of a row not to act."""
         return any(
             effect.kind == "oxidant" and effect.subject == "idle"
             for rule in self.judgement.rules_of_row(row)
@@ -151,9 +152,13 @@ def _capacity(liquor: Liquor, oxidant: Oxidant) -> float:
 
 
 def judged(liquor: Liquor, form: MetalForm, rows: tuple[Weighed, ...], air: bool, powder: bool) -> Judged:
-    """Let practice judge a contact with or without air."""
-    facts = contact_facts(liquor, form, [row.tried for row in rows], air, powder)
-    return Judged(rows, judge(practice(form.metal.text), facts))
+    """Let practice judge a contact with or without air; couples that water keeps frozen are no oxidants of it."""
+    rules = practice(form.metal.text)
+    first = Judged(rows, judge(rules, contact_facts(liquor, form, [row.tried for row in rows], air, powder)))
+    live = tuple(row for k, row in enumerate(rows) if not (row.tried.oxidant.frozen and first.is_idle(k)))
+    if len(live) == len(rows):
+        return first
+    return Judged(live, judge(rules, contact_facts(liquor, form, [row.tried for row in live], air, powder)))
 
 
 def with_product(branch: Judged, liquor: Liquor, form: MetalForm) -> Judged:

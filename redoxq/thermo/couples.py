@@ -44,6 +44,7 @@ class Couple:
     product: str
     title: str
     source: str
+    frozen: str
 
 
 @dataclass(frozen=True, slots=True)
@@ -60,6 +61,8 @@ class Oxidant:
         Symbol of the metal that it leaves, or nothing.
     changing : frozenset of str
         Its components before and after.
+    frozen : bool
+        The couple does not react in water at all unless practice lets it: where it is idle it is no oxidant.
     """
 
     id: str
@@ -71,6 +74,7 @@ class Oxidant:
     changing: frozenset[str]
     product: Species
     oxidised: Species
+    frozen: bool = False
 
 
 @dataclass(frozen=True, slots=True)
@@ -246,6 +250,7 @@ def _dissolved_oxidant(liquor: Liquor, couple: Couple, standing: Mapping[str, Sp
         changing,
         reduced,
         oxidised,
+        frozen=couple.frozen == "yes",
     )
 
 

@@ -24,7 +24,8 @@ SALTING_OUT = 0.1
 USUAL = {(1, 1): 0.03, (1, 2): -0.08, (1, 3): -0.15, (2, 1): 0.14, (2, 2): -0.08, (3, 1): 0.30, (3, 2): -0.05}
 """Mean coefficients (kg/mol) by the charges of cation and anion, where none is published for the pair."""
 
-UNCERTAINTY_OF_USUAL = 0.08
+LARGEST_ERROR = 5.0
+"""ln units; the coefficients are held where the liquor holds less water than ions, and so is their error."""
 
 
 class SpecificInteraction:
@@ -65,7 +66,7 @@ class SpecificInteraction:
 
     def expected_error(self, ionic_strength: Array) -> Array:
         """Standard error of ln gamma of a singly charged ion, shape (rows,)."""
-        error: Array = 0.01 + LN10 * 0.03 * np.asarray(ionic_strength)
+        error: Array = np.minimum(0.01 + LN10 * 0.03 * np.asarray(ionic_strength), LARGEST_ERROR)
         return error
 
 
