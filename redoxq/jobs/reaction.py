@@ -86,7 +86,8 @@ def _validity(temperature: float) -> tuple[str, ...]:
 
 def _reason(species: Species) -> Reason:
     made = f", from {species.derivation}" if species.derivation else ""
-    text = f"ΔfG°({species.key}) {species.G:.2f} kJ/mol at 25 °C ({species.basis}{made})"
+    note = f"; {species.note}" if species.note else ""
+    text = f"ΔfG°({species.key}) {species.G:.2f} kJ/mol at 25 °C ({species.basis}{made}){note}"
     return Reason("table", text, species.source)
 
 
