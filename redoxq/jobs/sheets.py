@@ -63,7 +63,9 @@ def _mean_coefficients(liquor: Liquor) -> dict[str, float]:
 
     R. A. Robinson, R. H. Stokes, Electrolyte Solutions, 2nd ed. (1959), chapter 2.
     """
-    found = {}
+    found: dict[str, float] = {}
+    if precipitates(liquor):
+        return found  # what was weighed is no longer what is dissolved
     totals = _ion_totals(liquor)
     for reagent in dict.fromkeys(liquor.reagents):
         parts = _ions_of(parse_formula(reagent))
@@ -92,6 +94,8 @@ def _ion_totals(liquor: Liquor) -> dict[str, float]:
 
 def _osmotic_coefficient(liquor: Liquor) -> float | None:
     """Practical osmotic coefficient over all ions as weighed (a molecule that is no salt counts once)."""
+    if precipitates(liquor):
+        return None
     particles = 0.0
     for reagent, amount in zip(liquor.reagents, liquor.amounts[0], strict=True):
         parts = _ions_of(parse_formula(reagent))
