@@ -58,7 +58,7 @@ def contact(
     temperature_C : float
         °C.
     pH : float, optional
-        Where it is held; else it is computed.
+        Of the liquor at the start, where it is given; else it is computed.
     air : str
         open, none, nitrogen, oxygen or hydrogen.
     metal_mass_g : float, optional

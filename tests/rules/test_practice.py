@@ -8,8 +8,8 @@ from __future__ import annotations
 
 import pytest
 from practice_cases import Case, facts_of, read_cases
-from redoxq.matter.tables import read_table
 
+from redoxq.matter.tables import read_table
 from redoxq.rules.engine import judge
 from redoxq.rules.language import Rule
 from redoxq.rules.practice import practice
