@@ -16,6 +16,7 @@ from redoxq.matter.formula import molar_mass
 from redoxq.thermo import activity, certificate
 from redoxq.thermo.couples import MetalForm, Oxidant
 from redoxq.thermo.equilibrium import Equilibrium, equilibrium
+from redoxq.thermo.forms import states_of
 from redoxq.thermo.network import PROTON, Network, Selection, network
 from redoxq.thermo.speciation import Liquor, dissolved_oxygen
 from redoxq.thermo.tableau import Array
@@ -97,7 +98,7 @@ class _Rest:
         self.reach, self.held = reach, held
         acting = [o for o in reach.acting if held is None or o is held or o.product.phase != "g"]
         merged = frozenset().union(reach.form.components, *(_merging(o) for o in acting))
-        merged |= {c for o in acting if o.plated for c in _states_between(o)}
+        merged |= {c for o in acting if o.plated for c in _states_between(reach.liquor, o)}
         gases = {o.product.key for o in acting if o.product.phase == "g"}
         liquor = reach.liquor
         self.oxygen = float(dissolved_oxygen(liquor)[0]) if any(o.id == "oxygen" for o in acting) else 0.0
@@ -171,15 +172,9 @@ def _merging(oxidant: Oxidant) -> frozenset[str]:
     return whole or oxidant.changing - {"H(I)", "O(-II)"}
 
 
-def _states_between(oxidant: Oxidant) -> set[str]:
+def _states_between(liquor: Liquor, oxidant: Oxidant) -> set[str]:
     """All states of a plated metal: it may stop at any of them."""
-    found = {
-        component
-        for species in catalogue().of_elements(frozenset({oxidant.plated, "H", "O", "Cl", "S", "N"}))
-        for component in species.components
-        if split_component(component)[0] == oxidant.plated
-    }
-    return found | set(oxidant.changing)
+    return {*states_of(liquor, oxidant.plated), f"{oxidant.plated}(0)", *oxidant.changing}
 
 
 def _forms_of(formula: str) -> list[str]:

@@ -213,7 +213,7 @@ def _ions(formula: Formula) -> list[tuple[Species, int]] | None:
     dissolved = catalogue().find(formula.text)
     if formula.water or (dissolved is not None and formula.text not in STRONG):
         return None
-    usable = [ion for ion in names.ions() if ion.formula.elements <= formula.elements]
+    usable = [ion for ion in names.ions() if ion.symbols <= formula.elements]
     for cation, anion in product(usable, usable):
         if (
             cation.formula.charge > 0 > anion.formula.charge

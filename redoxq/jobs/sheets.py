@@ -3,6 +3,8 @@
 from __future__ import annotations
 
 from collections.abc import Iterable
+from functools import lru_cache
+from itertools import product
 
 import numpy as np
 
@@ -41,21 +43,15 @@ def liquor_sheet(liquor: Liquor) -> LiquorSheet:
     )
 
 
+@lru_cache(maxsize=1024)
 def _ions_of(formula: Formula) -> tuple[tuple[Formula, int], tuple[Formula, int]] | None:
     """Cation and anion that a salt is weighed as, with their numbers."""
-    for cation in names.ions():
-        if cation.formula.charge <= 0 or not _starts_with(formula, cation.formula):
-            continue
-        for anion in names.ions():
-            if anion.formula.charge < 0 and names.salt_text(cation.formula, anion.formula) == formula.text:
-                plus, minus = cation.formula.charge, -anion.formula.charge
-                divisor = int(np.gcd(plus, minus))
-                return (cation.formula, minus // divisor), (anion.formula, plus // divisor)
+    usable = [ion.formula for ion in names.ions() if ion.symbols <= formula.elements]
+    for cation, anion in product(usable, usable):
+        if cation.charge > 0 > anion.charge and names.salt_text(cation, anion) == formula.text:
+            divisor = int(np.gcd(cation.charge, -anion.charge))
+            return (cation, -anion.charge // divisor), (anion, cation.charge // divisor)
     return None
-
-
-def _starts_with(formula: Formula, ion: Formula) -> bool:
-    return ion.elements <= formula.elements
 
 
 def _mean_coefficients(liquor: Liquor) -> dict[str, float]:

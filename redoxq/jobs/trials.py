@@ -10,10 +10,10 @@ from redoxq.jobs.facts import Tried, contact_facts
 from redoxq.matter.composition import split_component
 from redoxq.rules.engine import Judgement, judge
 from redoxq.rules.practice import practice
-from redoxq.thermo.constants import F, R
+from redoxq.thermo.constants import LN10, F, R
 from redoxq.thermo.couples import MetalForm, Oxidant
 from redoxq.thermo.forms import TRACE, dissolved_form, electrode_potential, states_of
-from redoxq.thermo.reactions import Reaction, combine, standard_quantities
+from redoxq.thermo.reactions import Reaction, combine, standard_gibbs_energy
 from redoxq.thermo.speciation import Liquor, dissolved_oxygen
 
 COVERAGE = 2.0
@@ -114,18 +114,18 @@ def _plates(oxidant: Oxidant, liquor: Liquor, volts: float) -> bool:
 def weighed(liquor: Liquor, form: MetalForm, oxidant: Oxidant) -> Weighed:
     """Weigh one oxidant against a metal."""
     reaction = combine(oxidant.half, form.half)
-    quantities = standard_quantities(reaction, liquor.temperature[:1])
+    temperature = liquor.temperature[:1]
+    delta_G, uncertainty = (float(value[0]) for value in standard_gibbs_energy(reaction, temperature))
+    kelvin = float(temperature[0])
     electrons = int(np.lcm(oxidant.half.electrons, form.half.electrons)) // _divisor(oxidant, form, reaction)
-    spread = float(quantities.uncertainty[0]) / (electrons * F)
-    error = float(liquor.model.expected_error(liquor.state.ionic_strength)[0])
-    activity = error * R * float(liquor.temperature[0]) / F
+    error = float(liquor.model.expected_error(liquor.state.ionic_strength)[0]) * R * kelvin / F
     driving = float(oxidant.potential[0] - form.potential[0])
     return Weighed(
-        Tried(oxidant, driving, COVERAGE * float(np.hypot(spread, activity))),
+        Tried(oxidant, driving, COVERAGE * float(np.hypot(uncertainty / (electrons * F), error))),
         reaction,
-        float(quantities.potential(electrons)[0]),
-        float(quantities.delta_G[0]) / 1000.0,
-        float(quantities.log10_K[0]),
+        -delta_G / (electrons * F),
+        delta_G / 1000.0,
+        -delta_G / (R * kelvin * LN10),
         _capacity(liquor, oxidant),
     )
 

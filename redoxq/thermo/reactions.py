@@ -10,7 +10,7 @@ import numpy as np
 from redoxq.errors import ReactionError
 from redoxq.matter.catalogue import Species
 from redoxq.matter.composition import component_atoms, split_component
-from redoxq.thermo.constants import F, R
+from redoxq.thermo.constants import T0, F, R
 from redoxq.thermo.gibbs import covariance, gibbs_energies
 from redoxq.thermo.tableau import Array
 
@@ -153,23 +153,24 @@ def standard_quantities(reaction: Reaction, temperature: Array) -> StandardQuant
         An electron has the energy of half a molecule of hydrogen less a hydrogen ion, at every temperature
         (IUPAC: the standard hydrogen electrode is the zero).
     """
-    coefficients = np.asarray(reaction.coefficients, dtype=float)
     temperature = np.asarray(temperature, dtype=float)
+    delta_G, uncertainty = standard_gibbs_energy(reaction, temperature)
+    coefficients = np.asarray(reaction.coefficients, dtype=float)
+    below, above = (gibbs_energies(reaction.species, temperature + step) @ coefficients for step in (-0.05, 0.05))
+    delta_S = -(above - below) / 0.1
+    return StandardQuantities(delta_G, delta_G + temperature * delta_S, delta_S, uncertainty, temperature)
 
-    def energy(at: Array) -> Array:
-        value: Array = gibbs_energies(reaction.species, at) @ coefficients
-        return value
 
-    delta_G = energy(temperature)
-    delta_S = -(energy(temperature + 0.05) - energy(temperature - 0.05)) / 0.1
-    variance = float(coefficients @ covariance(reaction.species) @ coefficients)
-    return StandardQuantities(
-        delta_G,
-        delta_G + temperature * delta_S,
-        delta_S,
-        np.full_like(temperature, np.sqrt(max(variance, 0.0))),
-        temperature,
-    )
+def standard_gibbs_energy(reaction: Reaction, temperature: Array) -> tuple[Array, Array]:
+    """Standard Gibbs energy of a reaction and its standard uncertainty, J/mol, both of shape (rows,).
+
+    The uncertainty is that at the temperature farthest from 25 °C; what species share cancels in it.
+    """
+    coefficients = np.asarray(reaction.coefficients, dtype=float)
+    farthest = float(temperature[np.argmax(np.abs(temperature - T0))])
+    variance = float(coefficients @ covariance(reaction.species, farthest) @ coefficients)
+    energy: Array = gibbs_energies(reaction.species, temperature) @ coefficients
+    return energy, np.full_like(temperature, np.sqrt(max(variance, 0.0)))
 
 
 def combine(reduction: Reaction, oxidation: Reaction) -> Reaction:
