@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import argparse
+import gc
 import os
 import sys
 from collections.abc import Iterable, Sequence
@@ -30,6 +31,8 @@ def main(arguments: Sequence[str] | None = None) -> int:
         Exit status: 0 answered, 2 a sentence that could not be used.
     """
     options = _parser().parse_args(arguments)
+    # Tables and rules stay for the whole run: looking through them for garbage only delays the first answer.
+    gc.set_threshold(100_000, 50, 50)
     try:
         if options.command is None:
             return _talk()

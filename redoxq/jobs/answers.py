@@ -150,7 +150,7 @@ class Branch:
     happenings: tuple[Happening, ...]
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
 class Answer:
     """What all answers hold.
 
@@ -178,7 +178,7 @@ class Answer:
         return _plain_fields(self)
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
 class ContactAnswer(Answer):
     """What happens when a metal meets a liquor."""
 
@@ -218,7 +218,7 @@ class ContactAnswer(Answer):
         return fields
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
 class ReactionAnswer(Answer):
     """Standard quantities of a reaction."""
 
@@ -235,7 +235,7 @@ class ReactionAnswer(Answer):
     reasons: tuple[Reason, ...] = ()
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
 class SheetAnswer(Answer):
     """Fact sheet of a species, substance or metal."""
 
@@ -243,7 +243,7 @@ class SheetAnswer(Answer):
     related: tuple[str, ...] = ()
 
 
-@dataclass(frozen=True, slots=True, kw_only=True)
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
 class LiquorAnswer(Answer):
     """Fact sheet of a liquor."""
 

@@ -29,6 +29,7 @@ COLUMNS = (
     "note",
     "states",
 )
+MANDATORY = ("formula", "phase", "G_kJ_mol", "uncertainty_kJ_mol", "basis", "source")
 PHASES = ("aq", "s", "l", "g")
 
 
@@ -197,9 +198,9 @@ def load(name: str, rows: tuple[Row, ...]) -> list[Species]:
 
 
 def _species(row: Row, name: str, line: int) -> Species:
-    for column in ("formula", "phase", "G_kJ_mol", "uncertainty_kJ_mol", "basis", "source"):
-        if not row[column].strip():
-            raise DataError(f"{name}, row {line}, column {column}: the cell is blank.")
+    if not all(map(str.strip, map(row.__getitem__, MANDATORY))):
+        column = next(column for column in MANDATORY if not row[column].strip())
+        raise DataError(f"{name}, row {line}, column {column}: the cell is blank.")
     if row["phase"] not in PHASES:
         raise DataError(f'{name}, row {line}, column phase: "{row["phase"]}" is none of {", ".join(PHASES)}.')
     numbers = [number_in(row, column, name, line) for column in COLUMNS[4:9]]

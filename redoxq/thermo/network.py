@@ -202,6 +202,8 @@ def _require_species(matrix: Integers, order: list[str]) -> None:
 
 
 def _independent_columns(matrix: Integers) -> list[int]:
+    if int(np.linalg.matrix_rank(matrix)) == matrix.shape[1]:
+        return list(range(matrix.shape[1]))
     keep: list[int] = []
     rank = 0
     for column in range(matrix.shape[1]):
