@@ -33,7 +33,6 @@ class Group:
     charge: int
     kind: str
     name: str
-    pattern: re.Pattern[str]
 
 
 def component_name(element: str, state: int) -> str:
@@ -83,9 +82,7 @@ def groups() -> tuple[Group, ...]:
     for row in read_table("groups.csv"):
         parts = [part.partition(":") for part in row["components"].split()]
         components = tuple((name, int(number or 1)) for name, _, number in parts)
-        # A group ends where no further digit or small letter belongs to its last symbol.
-        pattern = re.compile(re.escape(row["group"]) + r"(?![a-z0-9])")
-        found.append(Group(row["group"], components, int(row["charge"]), row["kind"], row["name"], pattern))
+        found.append(Group(row["group"], components, int(row["charge"]), row["kind"], row["name"]))
     return tuple(sorted(found, key=lambda group: -len(group.text)))
 
 
@@ -160,10 +157,18 @@ def _divided(formula: Formula, kinds: tuple[str, ...]) -> dict[str, int] | None:
     return found
 
 
+@lru_cache(maxsize=256)
+def _pattern(group: str) -> re.Pattern[str]:
+    """A group ends where no further digit or small letter belongs to its last symbol."""
+    return re.compile(re.escape(group) + r"(?![a-z0-9])")
+
+
 def _taken(text: str, group: Group) -> tuple[int, str]:
     """How often a group stands in the text of a formula, and the text without it."""
     times = 0
-    while match := group.pattern.search(text):
+    if group.text not in text:
+        return times, text
+    while match := _pattern(group.text).search(text):
         times += _multiplicity(text, match.start(), match.end())
         text = text[: match.start()] + "_" * (match.end() - match.start()) + text[match.end() :]
     return times, text
