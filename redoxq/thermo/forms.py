@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from functools import lru_cache
 
 import numpy as np
 
@@ -151,12 +152,20 @@ def _atoms(species: Species, element: str) -> int:
 
 def _candidates(liquor: Liquor, element: str) -> tuple[Species, ...]:
     """Species of the element whose other components the liquor holds."""
-    held = set(liquor.network.components)
-    elements = {symbol for species in liquor.network.species for symbol, _ in species.formula.atoms}
+    return _candidates_of(
+        liquor.network.components, frozenset().union(*(s.symbols for s in liquor.network.species)), element
+    )
+
+
+@lru_cache(maxsize=4096)
+def _candidates_of(components: tuple[str, ...], symbols: frozenset[str], element: str) -> tuple[Species, ...]:
+    held = set(components)
     return tuple(
         species
-        for species in catalogue().of_elements(frozenset(elements | {element, "H", "O"}))
-        if _atoms(species, element) and all(c in held or split_component(c)[0] == element for c in species.components)
+        for species in catalogue().of_elements(symbols | {element, "H", "O"})
+        if element in species.symbols
+        and _atoms(species, element)
+        and all(c in held or split_component(c)[0] == element for c in species.components)
     )
 
 
