@@ -3,16 +3,15 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from itertools import product
 
 import numpy as np
 
 from redoxq.errors import ReactionError
 from redoxq.jobs.answers import ReactionAnswer, Reason
 from redoxq.jobs.questions import ReactionQuestion, ReactionTerm
-from redoxq.matter import names
 from redoxq.matter.catalogue import Species, catalogue
 from redoxq.matter.formula import Formula, parse_formula
+from redoxq.matter.ions import ions_of
 from redoxq.matter.tables import data_version
 from redoxq.thermo.balancing import is_balanced, null_vectors
 from redoxq.thermo.constants import LN10, T0, F, R
@@ -210,25 +209,25 @@ def _first(formula: Formula, rows: Sequence[Species], notes: list[str]) -> Speci
 
 def _ions(formula: Formula) -> list[tuple[Species, int]] | None:
     """Ions of a salt or strong acid whose parts are in the tables; None for a weak acid or a molecule."""
-    dissolved = catalogue().find(formula.text)
-    if formula.water or (dissolved is not None and formula.text not in STRONG):
+    parts = None if formula.water else ions_of(formula)
+    if parts is None:
         return None
-    usable = [ion for ion in names.ions() if ion.symbols <= formula.elements]
-    for cation, anion in product(usable, usable):
-        if (
-            cation.formula.charge > 0 > anion.formula.charge
-            and names.salt_text(cation.formula, anion.formula) == formula.text
-        ):
-            plus, minus = catalogue().find(cation.formula.text), catalogue().find(anion.formula.text)
-            if plus is None or minus is None:
-                return None
-            divisor = int(np.gcd(cation.formula.charge, -anion.formula.charge))
-            return [(plus, -anion.formula.charge // divisor), (minus, cation.formula.charge // divisor)]
-    return None
+    found = [(catalogue().find(ion.text), count) for ion, count in parts]
+    ions = [(species, count) for species, count in found if species is not None]
+    dissolved = catalogue().find(formula.text)
+    if len(ions) < len(found) or (dissolved is not None and _holds_together(dissolved, ions)):
+        return None
+    return ions
+
+
+def _holds_together(dissolved: Species, ions: Sequence[tuple[Species, int]]) -> bool:
+    """Tell a weak acid or a molecule, which stands for itself, from an ion pair, which means its salt."""
+    gain = sum(count * ion.G for ion, count in ions) - dissolved.G
+    return ions[0][0].key == "H+" or gain > -PAIRED * R * T0 * LN10 / 1000.0
 
 
 SOLUBLE = -2.5
 """log10 of the solubility product above which a salt in a reaction means its ions."""
 
-STRONG = frozenset({"ZnSO4", "CuSO4", "CdSO4", "NiSO4", "CoSO4", "FeSO4", "MnSO4", "MgSO4"})
-"""Soluble salts that have a dissolved pair in the tables: written in a reaction they mean the salt."""
+PAIRED = -5.0
+"""log10 of the dissociation constant above which a dissolved salt is a pair of ions rather than a molecule."""

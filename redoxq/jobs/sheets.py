@@ -3,14 +3,12 @@
 from __future__ import annotations
 
 from collections.abc import Iterable
-from functools import lru_cache
-from itertools import product
 
 import numpy as np
 
 from redoxq.jobs.answers import LiquorSheet, SpeciesContent
-from redoxq.matter import names
-from redoxq.matter.formula import Formula, parse_formula
+from redoxq.matter.formula import parse_formula
+from redoxq.matter.ions import ions_of
 from redoxq.thermo.constants import WATER_MOLAR_MASS
 from redoxq.thermo.speciation import Liquor
 
@@ -43,17 +41,6 @@ def liquor_sheet(liquor: Liquor) -> LiquorSheet:
     )
 
 
-@lru_cache(maxsize=1024)
-def _ions_of(formula: Formula) -> tuple[tuple[Formula, int], tuple[Formula, int]] | None:
-    """Cation and anion that a salt is weighed as, with their numbers."""
-    usable = [ion.formula for ion in names.ions() if ion.symbols <= formula.elements]
-    for cation, anion in product(usable, usable):
-        if cation.charge > 0 > anion.charge and names.salt_text(cation, anion) == formula.text:
-            divisor = int(np.gcd(cation.charge, -anion.charge))
-            return (cation, -anion.charge // divisor), (anion, cation.charge // divisor)
-    return None
-
-
 def _mean_coefficients(liquor: Liquor) -> dict[str, float]:
     """Stoichiometric mean activity coefficients: a whole salt as weighed, its ions counted as free.
 
@@ -64,7 +51,7 @@ def _mean_coefficients(liquor: Liquor) -> dict[str, float]:
         return found  # what was weighed is no longer what is dissolved
     totals = _ion_totals(liquor)
     for reagent in dict.fromkeys(liquor.reagents):
-        parts = _ions_of(parse_formula(reagent))
+        parts = ions_of(parse_formula(reagent))
         if parts is None:
             continue
         logs, count = 0.0, 0
@@ -83,7 +70,7 @@ def _mean_coefficients(liquor: Liquor) -> dict[str, float]:
 def _ion_totals(liquor: Liquor) -> dict[str, float]:
     totals: dict[str, float] = {}
     for reagent, amount in zip(liquor.reagents, liquor.amounts[0], strict=True):
-        for ion, number in _ions_of(parse_formula(reagent)) or ():
+        for ion, number in ions_of(parse_formula(reagent)) or ():
             totals[ion.text] = totals.get(ion.text, 0.0) + number * float(amount)
     return totals
 
@@ -94,7 +81,7 @@ def _osmotic_coefficient(liquor: Liquor) -> float | None:
         return None
     particles = 0.0
     for reagent, amount in zip(liquor.reagents, liquor.amounts[0], strict=True):
-        parts = _ions_of(parse_formula(reagent))
+        parts = ions_of(parse_formula(reagent))
         particles += float(amount) * (1 if parts is None else sum(number for _, number in parts))
     if particles < LEAST_PARTICLES:
         return None

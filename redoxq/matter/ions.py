@@ -5,7 +5,8 @@ from __future__ import annotations
 import re
 from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import dataclass
-from functools import cache
+from functools import cache, lru_cache
+from itertools import product
 from math import gcd
 
 from redoxq.matter.elements import elements
@@ -93,6 +94,17 @@ def salt_text(cation: Formula, anion: Formula) -> str:
     plus, minus = cation.charge, -anion.charge
     divisor = gcd(plus, minus)
     return _times(cation, minus // divisor) + _times(anion, plus // divisor)
+
+
+@lru_cache(maxsize=1024)
+def ions_of(formula: Formula) -> tuple[tuple[Formula, int], tuple[Formula, int]] | None:
+    """Cation and anion that make a neutral salt or acid, each with its number; None where no two known ions do."""
+    usable = [ion.formula for ion in ions() if ion.symbols <= formula.elements]
+    for cation, anion in product(usable, usable):
+        if cation.charge > 0 > anion.charge and salt_text(cation, anion) == formula.text:
+            divisor = gcd(cation.charge, anion.charge)
+            return (cation, -anion.charge // divisor), (anion, cation.charge // divisor)
+    return None
 
 
 def _times(ion: Formula, count: int) -> str:
